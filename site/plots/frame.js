@@ -15,7 +15,7 @@ function values(spec, axis) {
   const put = (list) => { for (const v of list ?? []) if (typeof v === 'number' && Number.isFinite(v)) out.push(v); };
   for (const s of spec.series ?? []) {
     put(s[axis]);
-    if (axis === 'y') { put(s.low); put(s.high); }
+    if (axis === (s.mark === 'spans' ? 'x' : 'y')) { put(s.low); put(s.high); }
   }
   return out;
 }
@@ -93,11 +93,12 @@ export function frameOf(spec, w, view) {
   const endWidth = Math.max(0, ...ends.map((s) => textWidth(labelText(s), LABEL))) + 10;
   const outside = ends.length > 0 && endWidth < 0.3 * w; // labels stand right of the frame
   const legend = flow(legendOf(spec, ends.length > 0 && !outside), w - 8, (s) => 32 + textWidth(s.name, TICK) + 16);
+  const wordy = [spec.y?.label, spec.y?.unit].filter(Boolean).length > 0;
   const titleWidth = spec.title ? textWidth(spec.title, TITLE) + 12 : 0;
   const subBelow = Boolean(spec.sub) && titleWidth + textWidth(spec.sub, TICK) > w - 4;
   const subRow = subBelow && spec.title ? 18 : 0;
   const headings = (spec.title || spec.sub ? 22 : 0) + subRow;
-  const top = headings + legend.length * 20 + (spec.y?.label || spec.y?.unit ? 20 : 6) + (spec.x?.top ? 20 : 0) + 4;
+  const top = headings + legend.length * 20 + (wordy ? 20 : 6) + (spec.x?.top ? 20 : 0) + 4;
 
   let xd = view?.x ?? domainOf(spec, 'x'), yd = view?.y ?? domainOf(spec, 'y');
   let height = spec.height ?? Math.round(Math.min(320, Math.max(200, w * 0.56)));
@@ -107,7 +108,7 @@ export function frameOf(spec, w, view) {
     const want = ((yd[1] - yd[0]) / (xd[1] - xd[0])) * (w - left - rightMargin);
     height = Math.round(top + foot + Math.min(narrow ? 300 : 380, Math.max(120, want)));
   }
-  height = Math.max(height, top + foot + 60);
+  height = Math.max(height, top + foot + 40);
   const inner = height - top - foot;
   if (spec.equal) [xd, yd] = equalise(xd, yd, w - left - rightMargin, inner);
   const y = axisOf(spec, 'y', yd, Math.max(2, Math.floor(inner / 30)));

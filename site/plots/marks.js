@@ -50,12 +50,21 @@ function one(s, frame, theme) {
     case 'dots+line': return [Plot.line(x, { ...line, x, y }), ...points(s, x, y, theme, form)];
     case 'band': return [Plot.areaY(low, { x, y1: low, y2: high, fill: form.colour, fillOpacity: 0.18, clip: true })];
     case 'errorbars': return [...bars(x, low, high, frame, form.colour), ...points(s, x, y, theme, form)];
+    case 'spans': return spans(s, x, y, frame, theme, form);
     case 'rule': return [
       ...(s.y?.length ? [Plot.ruleY(y, { ...line, y })] : []),
       ...(s.x?.length ? [Plot.ruleX(x, { ...line, x })] : []),
     ];
     default: return [Plot.line(x, { ...line, x, y })];
   }
+}
+
+// spans are horizontal intervals, one a row; low and high are values of x.
+function spans(s, x, y, frame, theme, form) {
+  const low = column(s.low, frame.x.log), high = column(s.high, frame.x.log);
+  const ok = x.map((_, i) => i).filter((i) => Number.isFinite(low[i]) && Number.isFinite(high[i]));
+  const rule = { y: ok.map((i) => y[i]), x1: ok.map((i) => low[i]), x2: ok.map((i) => high[i]), stroke: form.colour, clip: true };
+  return [Plot.ruleY(ok, { ...rule, strokeWidth: 5, strokeOpacity: 0.35 }), ...points(s, x, y, theme, form)];
 }
 
 // bars are error bars with caps; a bar without a finite end is left out.
@@ -69,7 +78,7 @@ function bars(x, low, high, frame, colour) {
   return [Plot.ruleX(ok, { ...mark, x: ok.map((i) => x[i]), y1: ok.map((i) => low[i]), y2: ok.map((i) => high[i]) }), cap(low), cap(high)];
 }
 
-const ORDER = { band: 0, rule: 1, line: 2, 'dots+line': 3, errorbars: 4, points: 4 };
+const ORDER = { spans: 4, band: 0, rule: 1, line: 2, 'dots+line': 3, errorbars: 4, points: 4 };
 
 // seriesMarks draws bands first, then lines, points on top.
 export function seriesMarks(spec, frame, theme) {

@@ -5,7 +5,7 @@ import { SANS, SERIF } from './palette.js';
 import { linear, plain } from './ticks.js';
 import { escape, rich, width as textWidth } from './text.js';
 
-const PAD = 10; // px kept free above and below the curve
+const PAD = 9; // px kept free above and below the curve
 
 function voltScale(spec, at) {
   const all = [...at.right.potential, ...at.left.potential, spec.phi0_V ?? 0, 0].filter(Number.isFinite);

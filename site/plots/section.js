@@ -31,8 +31,8 @@ function layout(spec, w) {
   const laneNames = lanes && !phone;
   const m = { left: laneNames ? 72 : phone ? 44 : 50, right: phone ? 10 : 20 };
   const y0 = phone ? 46 : 26;
-  const potential = [y0, y0 + (phone ? 84 : 92)];
-  const body = [potential[1], potential[1] + Math.max(rows * (phone ? 34 : 36), phone ? 84 : 112)];
+  const potential = [y0, y0 + (phone ? 84 : 86)];
+  const body = [potential[1], potential[1] + Math.max(rows * (phone ? 34 : 36), phone ? 84 : 102)];
   const reach = Math.max(right.x.at(-1) ?? 1, left.x.at(-1) ?? 1, 1e-3);
   const wide = Math.max(0, spec.core?.width_nm ?? 0);
   const scale = (w - m.left - m.right) / (2 * reach + wide);
@@ -55,18 +55,16 @@ function core(spec, at, theme) {
   if (!sign) return out;
   const count = Math.max(4, Math.floor((bottom - top - 16) / 19)), pitch = (bottom - top) / count;
   const share = c.occupancy ?? 1;
-  let full = '', empty = '', halo = '';
+  let full = '', empty = '';
   for (let i = 0; i < count; i++) {
-    const y = (top + (i + 0.5) * pitch).toFixed(1), x = at.centre;
+    const y = Math.round(top + (i + 0.5) * pitch), x = at.centre;
     // evenly spread the occupied sites: site i is filled when the running share steps up
     const filled = Math.floor((i + 1) * share + 0.5) > Math.floor(i * share + 0.5);
-    halo += `M${x.toFixed(1)} ${y}h.01`;
     if (filled) full += `M${(x - 4).toFixed(1)} ${y}h8` + (sign > 0 ? `M${x.toFixed(1)} ${y - 4}v8` : '');
     else empty += `M${(x - 2.5).toFixed(1)} ${y}a2.5 2.5 0 1 0 5 0a2.5 2.5 0 1 0 -5 0`;
   }
-  out += `<path d="${halo}" stroke="${at.halfCore < 8 ? theme.card : theme.core}" stroke-width="14" stroke-linecap="round"/>`;
   out += `<path d="${full}" stroke="${theme.ink}" stroke-width="2.2" fill="none"/>`;
-  return empty ? out + `<path d="${empty}" stroke="${theme.dim}" stroke-width="1.2" fill="none"/>` : out;
+  return empty ? out + `<path d="${empty}" stroke="${theme.dim}" stroke-width="1.2" fill="${theme.card}"/>` : out;
 }
 
 // axis draws the distance scale, counted from the core on both sides.
@@ -122,7 +120,7 @@ function measures(spec, at, unit, theme, y) {
       out += `<text x="${(at.x0 + w + 7).toFixed(1)}" y="${ty}" font-family='${SANS}' font-size="13" fill="${theme.dim}">${rich(label)}</text>`;
     }
   }
-  return { svg: out, guides, height: Math.max(1, rows) * 20 + 4 };
+  return { svg: out, guides, height: Math.max(1, rows) * 20 };
 }
 
 // head names the two grains and the core above the drawing, and marks grain centres.
@@ -158,12 +156,20 @@ export function describe(spec) {
   return parts.filter(Boolean).join('; ');
 }
 
+// greyed takes the colour out of a stale drawing but keeps its text legible.
+function greyed(theme) {
+  const out = { ...theme, ink: theme.dim, potential: theme.dim };
+  for (const k in out) if (k.startsWith('carrier') || k === 'dopant') out[k] = theme.edge;
+  return out;
+}
+
 // sectionSVG draws spec at w pixels; it returns the SVG text and its height.
-export function sectionSVG(spec, w, theme) {
+export function sectionSVG(spec, w, colours) {
+  const theme = spec.stale ? greyed(colours) : colours;
   const at = layout(spec, w);
   const scale = axis(at, theme);
   const bands = carrierBands(spec, at, theme);
-  const below = at.body[1] + 26;
+  const below = at.body[1] + 23;
   const m = measures(spec, at, scale.unit, theme, below);
   const legend = legendRows(spec, at, theme, below + m.height, bands.thinned);
   const h = Math.ceil(below + m.height + legend.height);
@@ -172,7 +178,7 @@ export function sectionSVG(spec, w, theme) {
   const split = `<path d="M${at.x0} ${at.body[0]}H${at.x1}" stroke="${theme.line}"/>`;
   const label = describe(spec);
   const svg = `<svg xmlns="http://www.w3.org/2000/svg" class="section-drawing" role="img" aria-label="${escape(label)}" viewBox="0 0 ${w} ${h}" width="${w}" height="${h}" font-family='${SANS}' font-size="13">`
-    + `<title>${escape(label)}</title><g${spec.stale ? ' opacity="0.5"' : ''}>${body}${bands.svg}${m.guides}${split}${core(spec, at, theme)}`
+    + `<title>${escape(label)}</title><g>${body}${bands.svg}${m.guides}${split}${core(spec, at, theme)}`
     + `${potentialBand(spec, at, theme)}${head(spec, at, theme)}${scale.svg}${m.svg}${legend.svg}</g></svg>`;
   return { svg, height: h };
 }
