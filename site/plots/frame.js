@@ -32,7 +32,7 @@ export function domainOf(spec, axis) {
     const air = Math.max(0.04 * Math.log10(hi / lo), hi === lo ? 0.5 : 0);
     lo /= 10 ** air; hi *= 10 ** air;
   } else {
-    const air = hi === lo ? Math.abs(hi) * 0.1 || 1 : 0.04 * (hi - lo);
+    const air = hi === lo ? Math.abs(hi) * 0.1 || 1 : 0.06 * (hi - lo);
     if (!(spec.zero && lo === 0)) lo -= air;
     if (!(spec.zero && hi === 0)) hi += air;
   }

@@ -115,7 +115,7 @@ function curveLabels(put, spec, f, theme, taken) {
       if (at) atEnd.push({ y: at.py + 5, text, fill });
     }
   }
-  for (const l of spread(atEnd, 16, f.top + 8, f.bottom + 4)) put('text', { x: f.right + 7, y: l.y, 'font-size': 14, fill: l.fill }, l.text);
+  for (const l of spread(atEnd, 20, f.top + 8, f.bottom + 4)) put('text', { x: f.right + 7, y: l.y, 'font-size': 14, fill: l.fill }, l.text);
 }
 
 function inside(f, px, py) {
@@ -132,7 +132,8 @@ function decadeLabels(put, spec, f, theme, taken) {
       const rising = (next ?? s.y[d.at]) > (prev ?? s.y[d.at]) === s.x[d.at + 1] > s.x[d.at - 1];
       // outside of an arc is up-left while it rises with Z′, up-right while it falls
       const x = Math.min(Math.max(px + (rising ? -8 - w : 8), f.left + 2), f.right - w - 2), y = Math.max(f.top + 13, py - 6);
-      if (clash(taken, x, y, w)) continue; // rather none than a heap
+      const onPoint = s.x.some((v, i) => { const u = f.px(v), t = f.py(s.y[i]); return i !== d.at && u > x - 3 && u < x + w + 3 && t > y - 13 && t < y + 3; });
+      if (onPoint || clash(taken, x, y, w)) continue; // rather none than a heap
       taken.push({ x, y, w });
       put('text', { x, y, 'font-size': 13, fill: theme.ink, ...halo(theme) }, d.text);
     }

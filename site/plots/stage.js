@@ -20,15 +20,14 @@ export function themeName() {
 
 const parse = (text) => new DOMParser().parseFromString(text, 'image/svg+xml').documentElement;
 
+const KINDS = {
+  chart: chartSVG,
+  section: (spec, width, theme) => ({ svg: parse(sectionSVG(spec, width, theme).svg) }),
+  spark: (spec, width, theme) => ({ svg: parse(sparkSVG(spec, width, theme).svg) }),
+};
+
 // render draws without touching the page: the SVG element, and for charts its frame.
-export function render(kind, spec, width, theme, view) {
-  switch (kind) {
-    case 'chart': return chartSVG(spec, width, theme, view);
-    case 'section': return { svg: parse(sectionSVG(spec, width, theme).svg) };
-    case 'spark': return { svg: parse(sparkSVG(spec, width, theme).svg) };
-    default: throw new Error(`plots: unknown kind (${kind}), expected chart, section or spark`);
-  }
-}
+export const render = (kind, spec, width, theme, view) => KINDS[kind](spec, width, theme, view);
 
 export const actOf = (el) => acts.get(el);
 
@@ -76,6 +75,7 @@ const sizes = typeof ResizeObserver === 'function' ? new ResizeObserver((list) =
 
 // draw puts a drawing into el, or replaces the one it holds.
 export function draw(el, kind, spec) {
+  if (!Object.hasOwn(KINDS, kind)) throw new Error(`plots: unknown kind (${kind}), expected chart, section or spark`);
   const old = acts.get(el);
   const view = old && old.kind === kind && sameAxes(old.spec, spec) ? old.view : null;
   acts.set(el, { kind, spec, view, width: 0, frame: null });

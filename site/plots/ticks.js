@@ -78,18 +78,16 @@ export function power(v) {
   return Math.abs(k - near) < 1e-9 ? `10${superscript(near)}` : plain(v);
 }
 
-// celsius lists round Celsius temperatures for an axis of 1000/T (1/K), as {at, text},
-// at least gap pixels apart; px maps the axis value to pixels.
+// celsius lists round Celsius temperatures for an axis of 1000/T (1/K), as {at, text}, evenly
+// stepped in T and nowhere closer than gap pixels; px maps the axis value to pixels.
 export function celsius(a, b, px, gap) {
   const zero = 273.15; // exact by definition of the Celsius scale
+  const at = (t) => 1000 / (t + zero);
   const lo = 1000 / Math.max(a, b) - zero, hi = 1000 / Math.min(a, b) - zero;
-  const s = step(hi - lo, 12), marks = [];
-  let last = Infinity;
-  for (let t = Math.ceil(lo / s) * s; t <= hi; t += s) {
-    const at = 1000 / (t + zero);
-    if (Math.abs(px(at) - last) < gap) continue;
-    marks.push({ at, text: minus(String(tidy(t, s))) });
-    last = px(at);
+  for (let count = 12; count > 0; count--) {
+    const ts = linear(lo, hi, count);
+    const near = ts.some((t, i) => i > 0 && Math.abs(px(at(t)) - px(at(ts[i - 1]))) < gap);
+    if (!near || count === 1) return (near ? ts.slice(0, 1) : ts).map((t) => ({ at: at(t), text: minus(String(t)) }));
   }
-  return marks;
+  return [];
 }
