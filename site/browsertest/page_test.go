@@ -109,6 +109,7 @@ func TestNewVersion(t *testing.T) {
 	}
 	deadline := time.Now().Add(patience)
 	for visit := "a"; ; visit += "a" {
+		time.Sleep(1500 * time.Millisecond) // the browser looks for a new version about a second after a visit
 		b.navigate(s.address + "?visit=" + visit)
 		if eval[string](b, `document.documentElement.dataset.version`) != old {
 			break

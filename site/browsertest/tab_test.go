@@ -7,6 +7,7 @@ import (
 	"path/filepath"
 	"slices"
 	"strings"
+	"time"
 
 	"github.com/chromedp/cdproto/cdp"
 	"github.com/chromedp/cdproto/page"
@@ -45,15 +46,21 @@ func eval[T any](b *tab, script string) T {
 	return v
 }
 
-// wait waits until a JavaScript expression is true.
+// wait waits until a JavaScript expression is true, also across a reload.
 func (b *tab) wait(expression string) {
 	b.t.Helper()
-	ctx, end := context.WithTimeout(b.ctx, patience+patience/2)
+	ctx, end := context.WithTimeout(b.ctx, patience)
 	defer end()
-	_, err := chromedp.Run(ctx, chromedp.Poll[bool]("Boolean("+expression+")", chromedp.WithPollingTimeout(patience), chromedp.WithPollingInterval(20e6)))
-	if err != nil {
-		b.t.Fatalf("%s did not come true: %v; the page says %q; problems: %q", expression, err, b.body(), b.found())
+	ask := chromedp.Evaluate[bool]("Promise.resolve("+expression+").then(Boolean)", chromedp.EvalAwaitPromise)
+	var yes bool
+	var err error
+	for ctx.Err() == nil {
+		if yes, err = chromedp.Run(ctx, ask); yes && err == nil {
+			return
+		}
+		time.Sleep(20 * time.Millisecond)
 	}
+	b.t.Fatalf("%s did not come true (%v); the page says %q; problems: %q", expression, err, b.body(), b.found())
 }
 
 func (b *tab) body() string {

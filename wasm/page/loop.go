@@ -3,6 +3,7 @@ package page
 import (
 	"fmt"
 	"runtime/debug"
+	"strings"
 
 	"github.com/vugu/vugu"
 	vjs "github.com/vugu/vugu/js"
@@ -16,6 +17,7 @@ const largest = 16384 - 64
 // instead of ending the program, and a text too long for the renderer is cut.
 type guard struct {
 	report func(any)
+	told   map[string]bool // what was too long, so that it is said once and not at every render
 }
 
 func (g guard) build(br *vugu.BuildResults, bo *vugu.BuildOut) {
@@ -56,25 +58,28 @@ func (g guard) element(h vugu.JSValueHandler) vugu.JSValueHandler {
 // lengths cuts what the renderer cannot take.
 func (g guard) lengths(n *vugu.VGNode) {
 	if n.Type == vugu.TextNode && len(n.Data) > largest {
-		g.report(tooLong("text", "", len(n.Data)))
-		n.Data = n.Data[:largest]
+		g.tooLong("text of an element", len(n.Data))
+		n.Data = strings.ToValidUTF8(n.Data[:largest], "")
 	}
 	for i, a := range n.Attr {
 		if len(a.Key)+len(a.Val) > largest {
-			g.report(tooLong("attribute", a.Key, len(a.Val)))
+			g.tooLong("attribute "+a.Key, len(a.Val))
 			n.Attr[i].Val = ""
 		}
 	}
 	for i, p := range n.Prop {
 		if len(p.Key)+len(p.JSONVal) > largest {
-			g.report(tooLong("property", p.Key, len(p.JSONVal)))
+			g.tooLong("property "+p.Key, len(p.JSONVal))
 			n.Prop[i].JSONVal = []byte(`""`)
 		}
 	}
 }
 
-func tooLong(what, name string, n int) error {
-	return fmt.Errorf("page: %s %s is too long (%d bytes), expected at most %d", what, name, n, largest)
+func (g guard) tooLong(what string, n int) {
+	if !g.told[what] {
+		g.told[what] = true
+		g.report(fmt.Errorf("page: %s is too long (%d bytes), expected at most %d", what, n, largest))
+	}
 }
 
 // run calls f and reports a panic; it tells whether f came to its end.

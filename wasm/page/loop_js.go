@@ -22,7 +22,7 @@ func Main() { Run(NewRoot) }
 // per animation frame after events. It returns only after a fatal banner.
 func Run(newRoot func(Host) vugu.Builder) {
 	l := &loop{wishes: newGate(), glue: js.Global().Get("brinkfield")}
-	l.guard = guard{report: l.report}
+	l.guard = guard{report: l.report, told: map[string]bool{}}
 	l.browser = browser.New(l.do)
 	l.newRenderer()
 	var root vugu.Builder
