@@ -17,18 +17,15 @@ export function chartSVG(spec, w, theme, view = null) {
     width: w, height: frame.height,
     marginLeft: frame.left, marginRight: w - frame.right, marginTop: frame.top, marginBottom: frame.height - frame.bottom,
     x: scale(frame.x, [frame.left, frame.right]), y: scale(frame.y, [frame.bottom, frame.top]),
-    style: { fontFamily: SANS, fontSize: '13px', background: 'none', color: theme.ink, overflow: 'visible' },
     marks: [...axisMarks(frame, theme), ...seriesMarks(spec, frame, theme)],
   });
   // Plot's own style sheet is dropped: the page's style sheet rules, and the content
   // security policy admits no inline style.
   svg.querySelector('style')?.remove();
-  svg.setAttribute('class', 'chart-drawing');
-  svg.setAttribute('xmlns', 'http://www.w3.org/2000/svg');
-  svg.setAttribute('viewBox', `0 0 ${w} ${frame.height}`);
-  svg.setAttribute('font-family', SANS);
-  svg.setAttribute('font-size', '13');
-  svg.setAttribute('fill', theme.ink);
+  svg.removeAttribute('style');
+  const root = { class: 'chart-drawing', xmlns: 'http://www.w3.org/2000/svg', viewBox: `0 0 ${w} ${frame.height}`,
+    'font-family': SANS, 'font-size': 13, fill: theme.ink, color: theme.ink, overflow: 'visible' };
+  for (const k in root) svg.setAttribute(k, root[k]);
   write(svg, spec, frame, theme);
   return { svg, frame };
 }

@@ -107,7 +107,7 @@ function measures(spec, at, unit, theme, y) {
     out += `<text x="${cx.toFixed(1)}" y="${ty}" text-anchor="middle" font-family='${SERIF}' font-size="15" fill="${theme.ink}">${rich(spec.width_text ?? '')}</text>`;
     rows = inside ? 1 : 2;
     titled = Math.max(b, cx + w / 2) + 14 < at.x1 - tw;
-    guides = `<path d="M${a.toFixed(1)} ${at.potential[0]}V${at.body[1]}M${b.toFixed(1)} ${at.potential[0]}V${at.body[1]}" stroke="${theme.dim}" stroke-dasharray="1 4" fill="none"/>`;
+    guides = `<path d="M${a.toFixed(1)} ${at.body[0]}V${at.body[1]}M${b.toFixed(1)} ${at.body[0]}V${at.body[1]}" stroke="${theme.dim}" stroke-dasharray="1 4" fill="none"/>`;
   }
   const alone = rows > 0 && !titled;
   if (alone) rows++;
