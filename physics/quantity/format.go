@@ -85,6 +85,10 @@ var steps = map[string][]string{
 	"V":   {"V"},
 	"J":   {"eV"},
 	"m2":  {"nm2", "cm2"},
+	"H":   {"nH", "µH", "mH", "H"},
+	"V/K": {"mV/K"},
+	"m-1": {"cm-1"},
+	"S/m": {"S/m"},
 }
 
 // DisplayUnit picks the unit in which an SI value of this kind reads best.
@@ -116,8 +120,8 @@ func FormatIn(si float64, kind Kind, unit string, digits int) string {
 	return text + " " + PrettyUnit(unit)
 }
 
-// FormatInterval prints a value and its interval in one unit, with as many
-// decimals as show two digits of the interval's half-width: "0.2217", "0.2194 … 0.2241".
+// FormatInterval prints a value and its interval in one unit, to the digits that
+// the interval supports: "0.2217", "0.2194 … 0.2241".
 func FormatInterval(si, low, high float64, kind Kind) (value, interval, unit string) {
 	unit = DisplayUnit(si, kind)
 	v, a, b := Convert(si, kind, unit), Convert(low, kind, unit), Convert(high, kind, unit)
@@ -126,12 +130,16 @@ func FormatInterval(si, low, high float64, kind Kind) (value, interval, unit str
 }
 
 // IntervalDigits says how many significant digits of v its interval low…high
-// supports: the place of the second digit of the half-width, 2 to 6.
+// supports: to the second digit of the half-width when that begins with 1 or 2,
+// else to the first; 2 to 5 digits.
 func IntervalDigits(v, low, high float64) int {
 	half := math.Abs(high-low) / 2
 	if half == 0 || v == 0 || math.IsNaN(half) || math.IsInf(half, 0) {
 		return 4
 	}
-	d := int(math.Floor(math.Log10(math.Abs(v)))) - int(math.Floor(math.Log10(half))) + 2
-	return min(max(d, 2), 6)
+	place := int(math.Floor(math.Log10(half)))
+	if half < 2.95*math.Pow10(place) {
+		place--
+	}
+	return min(max(int(math.Floor(math.Log10(math.Abs(v))))-place+1, 2), 5)
 }

@@ -30,5 +30,9 @@ var (
 	Conductivity   = Kind{Name: "conductivity", SIUnit: "S/m", Expected: "a conductivity such as 3e-4 S/m or 3 µS/cm", dim: dimension{-3, -1, 3, 2}}
 	AreaResistance = Kind{Name: "resistance of unit area", SIUnit: "ohm m2", Expected: "a resistance of unit area such as 2.9 Ω m2", dim: dimension{4, 1, -3, -2}}
 	AreaCapacity   = Kind{Name: "capacitance per area", SIUnit: "F/m2", Expected: "a capacitance per area such as 20 µF/cm2", dim: dimension{-4, -1, 4, 2}}
+	InverseLength  = Kind{Name: "inverse length", SIUnit: "m-1", Expected: "an inverse length such as 24 m-1 or 0.24 cm-1", dim: dimension{-1}}
+	Inductance     = Kind{Name: "inductance", SIUnit: "H", Expected: "an inductance such as 0.4 µH", dim: dimension{2, 1, -2, -2}}
+	Conductance    = Kind{Name: "conductance", SIUnit: "S", Expected: "a conductance such as 1 mS", dim: dimension{-2, -1, 3, 2}}
+	VoltPerKelvin  = Kind{Name: "potential per temperature", SIUnit: "V/K", Expected: "a potential per temperature such as -0.22 mV/K", dim: dimension{2, 1, -3, -1, -1}}
 	Field          = Kind{Name: "electric field", SIUnit: "V/m", Expected: "a field such as 1e8 V/m or 1 MV/cm", dim: dimension{1, 1, -3, -1}}
 )

@@ -46,6 +46,7 @@ var symbols = map[string]symbol{
 	"Ohm":  {dimension{2, 1, -3, -2}, 1, true},
 	"S":    {dimension{-2, -1, 3, 2}, 1, true},
 	"F":    {dimension{-2, -1, 4, 2}, 1, true},
+	"H":    {dimension{2, 1, -2, -2}, 1, true},
 	"J":    {dimension{2, 1, -2}, 1, true},
 	"W":    {dimension{2, 1, -3}, 1, true},
 	"N":    {dimension{1, 1, -2}, 1, true},

@@ -105,6 +105,10 @@ func TestKnownAnswers(t *testing.T) {
 			if phi, err := m.PotentialForExcess(0, l.AcrossLength[0], 0); err != nil || math.Abs(phi-k.Phi0) > 1e-9 {
 				t.Errorf("case %d: excess gives back %.15g, %v, want %g", i, phi, err, k.Phi0)
 			}
+			shape := l.AcrossLength[0] * l.Capacitance / m.Epsilon()
+			if phi, err := m.PotentialForShape(0, shape, 0); err != nil || math.Abs(phi-k.Phi0) > 1e-9 {
+				t.Errorf("case %d: shape gives back %.15g, %v, want %g", i, phi, err, k.Phi0)
+			}
 		}
 	}
 }
@@ -137,6 +141,22 @@ func BenchmarkInvert(b *testing.B) {
 	}
 	for b.Loop() {
 		if _, err := m.PotentialForExcess(0, l.AcrossLength[0], 0); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
+
+// What one sample of an uncertainty costs: near start, relaxed tolerance.
+func BenchmarkInvertNear(b *testing.B) {
+	k := knownCases(b)[1]
+	m := k.medium(b)
+	l, err := m.Solve(k.Phi0)
+	if err != nil {
+		b.Fatal(err)
+	}
+	m.Tolerance = 1e-6
+	for b.Loop() {
+		if _, err := m.PotentialForExcess(0, l.AcrossLength[0]*1.01, k.Phi0); err != nil {
 			b.Fatal(err)
 		}
 	}

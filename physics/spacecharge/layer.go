@@ -51,7 +51,7 @@ func (m *Medium) open(phi0 float64) (*Layer, error) {
 	n := len(m.Species)
 	buf := make([]float64, 2*n)
 	l := &Layer{Medium: m, Phi0: phi0, psi0: phi0 / m.thermal, AcrossLength: buf[:n], AlongLength: buf[n:],
-		Across: math.NaN(), Along: math.NaN(), quad: &numerics.Quadrature{Relative: 1e-10}}
+		Across: math.NaN(), Along: math.NaN(), quad: &numerics.Quadrature{Relative: m.tolerance()}}
 	for i, s := range m.Species {
 		if t := math.Abs(m.z[i] * l.psi0); s.Mobile && !(t <= MaxReduced) {
 			return nil, fmt.Errorf("spacecharge: potential is too high for %s (%g V is %.4g k_BT/e times its charge), expected at most %d",

@@ -40,6 +40,10 @@ type Medium struct {
 	Permittivity float64 // relative
 	Species      []Species
 
+	// Tolerance is the relative error asked of integrals and inversions; 0 means
+	// 1e-10. Sampling of uncertainties may ask less.
+	Tolerance float64
+
 	epsilon float64   // absolute permittivity, F/m
 	thermal float64   // k_BT/e, V
 	screen  float64   // Σ z²c of the linearised charge, m⁻³
@@ -147,6 +151,13 @@ func (m *Medium) screening() float64 {
 		sum -= charge * charge / m.sites[k]
 	}
 	return sum
+}
+
+func (m *Medium) tolerance() float64 {
+	if m.Tolerance > 0 {
+		return m.Tolerance
+	}
+	return 1e-10
 }
 
 // Debye returns λ_D = √(ε k_BT/(e² Σ z²c∞)) over all mobile species, in m: the

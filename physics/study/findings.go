@@ -1,0 +1,202 @@
+package study
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	q "brinkfield/physics/quantity"
+)
+
+// findings says in a few sentences what a colleague would say, with numbers.
+func (r *run) findings() []string {
+	list := []string{}
+	for _, f := range []func() string{r.findShare, r.findBarrier, r.findWidths, r.findCore, r.findShortForm, r.findMoves, r.findLeftOut, r.findGiven} {
+		if text := f(); text != "" {
+			list = append(list, text)
+		}
+	}
+	if len(list) == 0 {
+		list = append(list, "Nothing to say yet: load spectra, or give the barrier another way in Profile.")
+	}
+	return list
+}
+
+func (r *run) findShare() string {
+	series := present(r.result.Series("blocking"))
+	if len(series) == 0 {
+		return ""
+	}
+	shown := r.atView("blocking")
+	if shown == nil {
+		shown = &series[len(series)/2]
+	}
+	text := fmt.Sprintf("Grain boundaries take %s of the resistance at %s", shareText(*shown), celsius(float64(shown.Temperature)))
+	if first, last := series[0], series[len(series)-1]; len(series) > 1 {
+		text += fmt.Sprintf(" (%s at %s, %s at %s)", shareText(first), celsius(float64(first.Temperature)), shareText(last), celsius(float64(last.Temperature)))
+	}
+	return text + "."
+}
+
+func shareText(n Number) string { return q.FormatNumber(100*float64(n.Value), 3) + " %" }
+
+func (r *run) findBarrier() string {
+	id := columnList[r.routeColumn()].id
+	shown := r.atView(id)
+	if shown == nil {
+		return ""
+	}
+	text := fmt.Sprintf("Barrier Φ₀ = %s at %s by the %s", withInterval(*shown), celsius(float64(shown.Temperature)), FieldOf("route").optionLabel(r.in.Get("route")))
+	if s := r.result.Number("phi0_slope", 0); s != nil && !s.Missing() {
+		text += fmt.Sprintf("; it %s by %s mV per kelvin over the range", map[bool]string{true: "falls", false: "rises"}[s.Value < 0], q.FormatNumber(math.Abs(1e3*float64(s.Value)), 2))
+	}
+	if e := r.result.Number("energy_bulk", 0); e != nil && !e.Missing() {
+		text += fmt.Sprintf(". Energies: interior %s", withInterval(*e))
+		if g := r.result.Number("energy_boundary", 0); !g.Missing() {
+			text += fmt.Sprintf(", boundary %s", withInterval(*g))
+		}
+	}
+	return text + "."
+}
+
+func (f Field) optionLabel(key string) string {
+	for _, o := range f.Options {
+		if o.Key == key {
+			return o.Label
+		}
+	}
+	return key
+}
+
+func (r *run) findWidths() string {
+	gap, small, width := r.atView("width_gap"), r.atView("width_small_signal"), r.atView("width_electrical")
+	if gap == nil || small == nil || width == nil {
+		return ""
+	}
+	roads := fmt.Sprintf("%s from the barrier (2λ_eff) and %s from the capacitance", small.Text(), width.Text())
+	if math.Abs(float64(gap.Value)) <= arcAllowance || (gap.HasInterval() && gap.Low <= 0 && gap.High >= 0) {
+		return fmt.Sprintf("The two roads to the width agree, %s: what a charged boundary with these carriers shows.", roads)
+	}
+	share := r.atView("carriers_closing_share")
+	return fmt.Sprintf("The two roads to the width disagree, %s: full dopant charge does not fit. Carriers of %s of the nominal ones would close them.", roads, shareText(*share))
+}
+
+func (r *run) findCore() string {
+	charge, theta := r.atView("core_charge"), r.atView("core_occupancy")
+	if charge == nil || theta == nil {
+		return ""
+	}
+	text := fmt.Sprintf("The core carries %s, %s of its sites if there are %s", signed(charge.Text()), percent(float64(theta.Value)),
+		q.Format(r.specimen.coreSites, q.SheetDensity, 2))
+	if seg := r.atView("core_segregation"); seg != nil {
+		text += fmt.Sprintf(", which asks for a segregation energy of %s", seg.Text())
+	}
+	return text + "."
+}
+
+func signed(text string) string {
+	if strings.HasPrefix(text, "−") {
+		return text
+	}
+	return "+" + text
+}
+
+func (r *run) findShortForm() string {
+	bias := r.atView("short_bias")
+	if bias == nil {
+		return ""
+	}
+	mv := 1e3 * float64(bias.Value)
+	return fmt.Sprintf("The short form alone would read %s mV too %s; exact depletion %s mV.", q.FormatNumber(math.Abs(mv), 2),
+		map[bool]string{true: "high", false: "low"}[mv > 0], signed(q.FormatNumber(1e3*float64(r.atViewValue("phi0_depletion")-r.atViewValue("phi0_full"))*sign(r.atViewValue("phi0_full")), 2)))
+}
+
+func (r *run) atViewValue(id string) float64 {
+	if n := r.atView(id); n != nil {
+		return float64(n.Value)
+	}
+	return math.NaN()
+}
+
+// findMoves names the input of the chosen route that moves the barrier most.
+func (r *run) findMoves() string {
+	var most *Move
+	for i, m := range r.result.Moves {
+		if m.Route == r.in.Get("route") && !math.IsNaN(float64(m.Shift)) && (most == nil || math.Abs(float64(m.Shift)) > math.Abs(float64(most.Shift))) {
+			most = &r.result.Moves[i]
+		}
+	}
+	if most == nil {
+		return ""
+	}
+	text := fmt.Sprintf("What moves Φ₀ most: %s, %s mV for %s", strings.ToLower(most.Input[:1])+most.Input[1:], signed(q.FormatNumber(1e3*float64(most.Shift), 2)), most.Change)
+	return text + "; the dopant is taken as frozen and flat."
+}
+
+// findLeftOut lists the temperatures without a barrier, with the reason.
+func (r *run) findLeftOut() string {
+	var list []string
+	for i, e := range r.evidence {
+		if math.IsNaN(r.phiAt(i)) {
+			reason := e.Refused
+			if n := r.result.Number("phi0_full", i+1); n != nil {
+				reason = n.Reason
+			}
+			list = append(list, fmt.Sprintf("%s (%s)", celsius(e.Spectrum.T), reason))
+		}
+	}
+	if len(list) == 0 {
+		return ""
+	}
+	return "No barrier is read at " + strings.Join(list, ", ") + "."
+}
+
+func (r *run) phiAt(i int) float64 {
+	n := r.result.Number("phi0_full", i+1)
+	if n == nil {
+		return math.NaN()
+	}
+	return float64(n.Value)
+}
+
+// findGiven speaks of a barrier that does not come from spectra.
+func (r *run) findGiven() string {
+	how := r.in.Get("barrier")
+	if how == "spectra" || math.IsNaN(r.result.View.Phi0) {
+		return ""
+	}
+	v := r.result.View
+	return fmt.Sprintf("With %s the core stands at %s at %s and holds %s.", FieldOf("barrier").optionLabel(how),
+		q.Format(v.Phi0, q.Potential, 3), celsius(v.Temperature), signed(q.Format(v.CoreCharge, q.SurfaceCharge, 3)))
+}
+
+// atView returns a number at the temperature of the spectrum shown, nil if it has no value.
+func (r *run) atView(id string) *Number {
+	i := r.result.View.Spectrum
+	if i < 0 || i >= len(r.result.Evidence) {
+		return nil
+	}
+	n := r.result.Number(id, i+1)
+	if n == nil || n.Missing() {
+		return nil
+	}
+	return n
+}
+
+func present(list []Number) (out []Number) {
+	for _, n := range list {
+		if !n.Missing() {
+			out = append(out, n)
+		}
+	}
+	return out
+}
+
+// withInterval prints "0.2217 V (95 %: 0.2215 … 0.2220)".
+func withInterval(n Number) string {
+	_, interval, _ := n.Texts()
+	if interval == "" {
+		return n.Text()
+	}
+	return n.Text() + " (95 %: " + interval + ")"
+}
