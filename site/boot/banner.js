@@ -6,6 +6,7 @@ let ended = false;
 function button(label, onclick) {
   const b = document.createElement("button");
   b.type = "button";
+  b.className = "btn";
   b.textContent = label;
   b.addEventListener("click", onclick);
   return b;

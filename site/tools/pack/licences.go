@@ -69,9 +69,6 @@ var packagePath = regexp.MustCompile(`node_modules/((?:@[^/]+/)?[^/]+)/`)
 func plotsLicences(site string, sections map[string]string) error {
 	r := api.Build(api.BuildOptions{EntryPoints: []string{filepath.Join(site, "plots", "index.js")},
 		Bundle: true, Metafile: true, Format: api.FormatIIFE, LogLevel: api.LogLevelSilent})
-	if _, missing := os.Stat(filepath.Join(site, "plots", "index.js")); missing != nil {
-		return nil
-	}
 	if len(r.Errors) > 0 {
 		return failure("plots", r.Errors)
 	}

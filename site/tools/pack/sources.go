@@ -30,14 +30,11 @@ func sources(site string) (s source, err error) {
 	if err != nil {
 		return s, err
 	}
-	boot, err := bundle(filepath.Join(site, "boot", "index.js"), "")
+	boot, err := bundle(filepath.Join(site, "boot", "index.js"))
 	if err != nil {
 		return s, err
 	}
-	plots, err := "", error(nil)
-	if _, missing := os.Stat(filepath.Join(site, "plots", "index.js")); missing == nil {
-		plots, err = bundle(filepath.Join(site, "plots", "index.js"), "brinkfieldPlots")
-	}
+	plots, err := bundle(filepath.Join(site, "plots", "index.js"))
 	if err != nil {
 		return s, err
 	}
@@ -50,11 +47,7 @@ func sources(site string) (s source, err error) {
 		return s, err
 	}
 	s.worker = support + s.worker
-	style, err := os.ReadFile(filepath.Join(site, "style.css"))
-	if err != nil && !os.IsNotExist(err) {
-		return s, err
-	}
-	if s.style, err = minify(string(style), api.LoaderCSS); err != nil {
+	if s.style, err = style(site); err != nil {
 		return s, err
 	}
 	s.plotsStyles, err = plotsStyles(site)
@@ -74,19 +67,26 @@ func goSupport() (string, error) {
 	return minify(string(text), api.LoaderJS)
 }
 
-// bundle makes one script of an entry and what it imports. With a name, what the
-// entry exports becomes that global, unless the entry has set the global itself.
-func bundle(entry, global string) (string, error) {
-	o := api.BuildOptions{
+// style joins the style sheet for what stands around the program with the page's own.
+func style(site string) (string, error) {
+	text := ""
+	for _, file := range []string{filepath.Join("boot", "boot.css"), "style.css"} {
+		b, err := os.ReadFile(filepath.Join(site, file))
+		if err != nil {
+			return "", err
+		}
+		text += string(b) + "\n"
+	}
+	return minify(text, api.LoaderCSS)
+}
+
+// bundle makes one script of an entry and all it imports.
+func bundle(entry string) (string, error) {
+	r := api.Build(api.BuildOptions{
 		EntryPoints: []string{entry}, Bundle: true, Format: api.FormatIIFE, Target: api.ES2022,
 		MinifyWhitespace: true, MinifyIdentifiers: true, MinifySyntax: true,
 		LegalComments: api.LegalCommentsNone, Charset: api.CharsetUTF8, LogLevel: api.LogLevelSilent,
-	}
-	if global != "" {
-		o.GlobalName = global + "Exports"
-		o.Footer = map[string]string{"js": fmt.Sprintf("window.%s??=%sExports;", global, global)}
-	}
-	r := api.Build(o)
+	})
 	if len(r.Errors) > 0 {
 		return "", failure(entry, r.Errors)
 	}

@@ -1,0 +1,64 @@
+package browsertest
+
+import (
+	"slices"
+	"testing"
+
+	"github.com/chromedp/chromedp"
+)
+
+// BenchmarkStart is the time from opening the page to its first render, in a
+// profile that has never seen it.
+func BenchmarkStart(b *testing.B) {
+	for _, f := range forms {
+		b.Run(f.name, func(b *testing.B) {
+			var started, shown []float64
+			for b.Loop() {
+				tab := open(b, options{kind: f.kind})
+				started = append(started, eval[float64](tab, `performance.getEntriesByName("brinkfield-start")[0].startTime`))
+				shown = append(shown, eval[float64](tab, `performance.getEntriesByName("brinkfield-shown")[0].startTime`))
+				_ = chromedp.Cancel(tab.ctx)
+			}
+			b.ReportMetric(median(started), "ms-compiled")
+			b.ReportMetric(median(shown), "ms-shown")
+			b.ReportMetric(0, "ns/op")
+		})
+	}
+}
+
+// BenchmarkLoop is what the loop itself costs: a key in a field to the address
+// written and the page rendered, on a page that calculates nothing.
+func BenchmarkLoop(b *testing.B) {
+	tab := open(b, options{kind: single, faulty: true})
+	var times []float64
+	for b.Loop() {
+		times = append(times, redraw(tab, "#up", "", "#count"))
+	}
+	b.ReportMetric(median(times), "ms-redraw")
+	b.ReportMetric(0, "ns/op")
+}
+
+// redraw puts value into a field (or clicks, for an empty value) and returns the
+// milliseconds until the text under result changes on the page.
+func redraw(tab *tab, field, value, result string) float64 {
+	return eval[float64](tab, `new Promise((done, fail) => {
+		const field = document.querySelector(`+quoted(field)+`), value = `+quoted(value)+`;
+		let start = 0;
+		const see = new MutationObserver(() => { see.disconnect(); done(performance.now() - start); });
+		see.observe(document.querySelector(`+quoted(result)+`), {subtree: true, childList: true, characterData: true});
+		setTimeout(() => fail(new Error("no change within 10 s")), 10000);
+		requestAnimationFrame(() => {
+			start = performance.now();
+			if (value === "") { field.click(); return; }
+			field.value = value;
+			field.dispatchEvent(new Event("input", {bubbles: true}));
+			field.dispatchEvent(new Event("change", {bubbles: true}));
+		});
+	})`)
+}
+
+func median(list []float64) float64 {
+	s := slices.Clone(list)
+	slices.Sort(s)
+	return s[len(s)/2]
+}
