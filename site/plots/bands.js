@@ -36,7 +36,8 @@ export function columns(at, index) {
   return out;
 }
 
-function between(x, r, d, seek) {
+// between is c/c∞ at a distance d; seek gives the interval it lies in.
+export function between(x, r, d, seek) {
   const j = seek();
   const a = r[j], b = r[Math.min(j + 1, r.length - 1)], span = x[j + 1] - x[j];
   const t = span > 0 ? Math.min(1, Math.max(0, (d - x[j]) / span)) : 0;

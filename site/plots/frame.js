@@ -118,7 +118,8 @@ export function frameOf(spec, w, view) {
   if (spec.equal) Object.assign(y, axisOf(spec, 'y', y.domain, Math.max(2, Math.floor(inner / 30))));
   if (spec.x?.reverse) x.domain = [x.domain[1], x.domain[0]];
   if (spec.y?.reverse) y.domain = [y.domain[1], y.domain[0]];
-  const frame = { w, height, left, right: w - rightMargin, top, bottom: height - foot, x, y, narrow, headings, subBelow, titleWidth, legend, outside };
+  const frame = { w, height, left, right: w - rightMargin, top, bottom: height - foot, x, y, narrow, headings, subBelow, titleWidth, legend, outside,
+    clipped: Boolean(view || spec.x?.domain || spec.y?.domain) }; // without a chosen range nothing lies outside
   frame.px = projector(x, frame.left, frame.right);
   frame.py = projector(y, frame.bottom, frame.top);
   if (spec.x?.top?.fn === 'celsius') frame.celsius = celsius(...x.domain, frame.px, 44);

@@ -36,24 +36,28 @@ export function tipText(spec, hit) {
 function showTip(layer, spec, frame, theme, hit) {
   layer.replaceChildren();
   if (!hit) return;
-  const lines = tipText(spec, hit), font = `13px ${SANS}`;
-  const w = Math.max(...lines.map((l) => textWidth(l, font))) + 16, h = lines.length * 18 + 8;
-  const x = hit.px + 12 + w < frame.w ? hit.px + 12 : Math.max(0, hit.px - 12 - w);
-  const y = Math.min(Math.max(0, hit.py - h - 8), frame.height - h);
-  layer.append(
-    element('circle', { cx: hit.px, cy: hit.py, r: 6.5, fill: 'none', stroke: look(spec.series[hit.series].role, theme).colour, 'stroke-width': 2 }),
-    element('rect', { x, y, width: w, height: h, rx: 3, fill: theme.card, stroke: theme.edge }),
-    ...lines.map((l, i) => element('text', { x: x + 8, y: y + 18 + i * 18, 'font-size': 13, fill: theme.ink }, l)),
-  );
+  layer.append(element('circle', { cx: hit.px, cy: hit.py, r: 6.5, fill: 'none', stroke: look(spec.series[hit.series].role, theme).colour, 'stroke-width': 2 }));
+  box(layer, tipText(spec, hit), hit.px, hit.py, frame.w, frame.height, theme);
+}
+
+// box writes lines beside (px, py), turned inwards at the edges of the drawing.
+export function box(layer, lines, px, py, width, height, theme) {
+  const w = Math.max(...lines.map((l) => textWidth(l, `13px ${SANS}`))) + 16, h = lines.length * 18 + 8;
+  const x = px + 12 + w < width ? px + 12 : Math.max(0, px - 12 - w), y = Math.min(Math.max(0, py - h - 8), height - h);
+  layer.append(element('rect', { x, y, width: w, height: h, rx: 3, fill: theme.card, stroke: theme.edge }),
+    ...lines.map((l, i) => element('text', { x: x + 8, y: y + 18 + i * 18, 'font-size': 13, fill: theme.ink }, l)));
+}
+
+// inDrawing gives pointer coordinates in the units of a drawing w wide.
+export function inDrawing(svg, w, e) {
+  const rect = svg.getBoundingClientRect(), k = w / (rect.width || w);
+  return [(e.clientX - rect.left) * k, (e.clientY - rect.top) * k];
 }
 
 // listen wires one drawn chart. zoom(view) is called with the dragged range.
 export function listen(svg, el, spec, frame, theme, zoom) {
   const layer = svg.appendChild(element('g', { class: 'plot-tip', 'pointer-events': 'none', 'text-anchor': 'start' }));
-  const at = (e) => {
-    const box = svg.getBoundingClientRect(), k = frame.w / (box.width || frame.w);
-    return [(e.clientX - box.left) * k, (e.clientY - box.top) * k];
-  };
+  const at = (e) => inDrawing(svg, frame.w, e);
   const clampX = (v) => Math.min(Math.max(v, frame.left), frame.right), clampY = (v) => Math.min(Math.max(v, frame.top), frame.bottom);
   let start = null;
   svg.addEventListener('pointerdown', (e) => {

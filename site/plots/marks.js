@@ -28,10 +28,10 @@ function parts(s, n) {
   return { kept: all.filter((i) => !muted.has(i) && !marked.has(i)), muted: all.filter((i) => muted.has(i)), marked: all.filter((i) => marked.has(i) && !muted.has(i)) };
 }
 
-function points(s, x, y, theme, form) {
+function points(s, x, y, frame, theme, form) {
   const pick = (list) => ({ x: list.map((i) => x[i]), y: list.map((i) => y[i]) });
   const { kept, muted, marked } = parts(s, Math.min(x.length, y.length));
-  const base = { stroke: form.colour, symbol: form.symbol, r: s.r ?? 3.4, strokeWidth: 1.5, clip: true };
+  const base = { stroke: form.colour, symbol: form.symbol, r: s.r ?? 3.4, strokeWidth: 1.5, clip: frame.clipped };
   const stroked = form.symbol === 'times';
   const fill = s.hollow || s.role === 'measured' ? theme.paper : form.colour;
   const out = [Plot.dot(kept, { ...base, ...pick(kept), ...(stroked ? {} : { fill }) })];
@@ -43,13 +43,13 @@ function points(s, x, y, theme, form) {
 function one(s, frame, theme) {
   const form = look(s.role, theme), x = column(s.x, frame.x.log), y = column(s.y, frame.y.log);
   const dash = s.dash ? form.dash ?? '6 4' : s.dash === false ? null : form.dash;
-  const line = { stroke: form.colour, strokeWidth: s.faint ? 1.2 : 2, strokeOpacity: s.faint ? 0.6 : 1, clip: true, ...(dash ? { strokeDasharray: dash } : {}) };
+  const line = { stroke: form.colour, strokeWidth: s.faint ? 1.2 : 2, strokeOpacity: s.faint ? 0.6 : 1, clip: frame.clipped, ...(dash ? { strokeDasharray: dash } : {}) };
   const low = column(s.low, frame.y.log), high = column(s.high, frame.y.log);
   switch (s.mark) {
-    case 'points': return points(s, x, y, theme, form);
-    case 'dots+line': return [Plot.line(x, { ...line, x, y }), ...points(s, x, y, theme, form)];
-    case 'band': return [Plot.areaY(low, { x, y1: low, y2: high, fill: form.colour, fillOpacity: 0.18, clip: true })];
-    case 'errorbars': return [...bars(x, low, high, frame, form.colour), ...points(s, x, y, theme, form)];
+    case 'points': return points(s, x, y, frame, theme, form);
+    case 'dots+line': return [Plot.line(x, { ...line, x, y }), ...points(s, x, y, frame, theme, form)];
+    case 'band': return [Plot.areaY(low, { x, y1: low, y2: high, fill: form.colour, fillOpacity: 0.18, clip: frame.clipped })];
+    case 'errorbars': return [...bars(x, low, high, frame, form.colour), ...points(s, x, y, frame, theme, form)];
     case 'spans': return spans(s, x, y, frame, theme, form);
     case 'rule': return [
       ...(s.y?.length ? [Plot.ruleY(y, { ...line, y })] : []),
@@ -63,14 +63,14 @@ function one(s, frame, theme) {
 function spans(s, x, y, frame, theme, form) {
   const low = column(s.low, frame.x.log), high = column(s.high, frame.x.log);
   const ok = x.map((_, i) => i).filter((i) => Number.isFinite(low[i]) && Number.isFinite(high[i]));
-  const rule = { y: ok.map((i) => y[i]), x1: ok.map((i) => low[i]), x2: ok.map((i) => high[i]), stroke: form.colour, clip: true };
-  return [Plot.ruleY(ok, { ...rule, strokeWidth: 5, strokeOpacity: 0.35 }), ...points(s, x, y, theme, form)];
+  const rule = { y: ok.map((i) => y[i]), x1: ok.map((i) => low[i]), x2: ok.map((i) => high[i]), stroke: form.colour, clip: frame.clipped };
+  return [Plot.ruleY(ok, { ...rule, strokeWidth: 5, strokeOpacity: 0.35 }), ...points(s, x, y, frame, theme, form)];
 }
 
 // bars are error bars with caps; a bar without a finite end is left out.
 function bars(x, low, high, frame, colour) {
   const ok = x.map((_, i) => i).filter((i) => Number.isFinite(low[i]) && Number.isFinite(high[i]));
-  const mark = { stroke: colour, strokeWidth: 1.4, clip: true };
+  const mark = { stroke: colour, strokeWidth: 1.4, clip: frame.clipped };
   const cap = (end) => Plot.link(ok, {
     ...mark, x1: ok.map((i) => frame.px.back(frame.px(x[i]) - 4)), x2: ok.map((i) => frame.px.back(frame.px(x[i]) + 4)),
     y1: ok.map((i) => end[i]), y2: ok.map((i) => end[i]),

@@ -163,7 +163,7 @@ function greyed(theme) {
   return out;
 }
 
-// sectionSVG draws spec at w pixels; it returns the SVG text and its height.
+// sectionSVG draws spec at w pixels; it returns the SVG text, its height and its geometry.
 export function sectionSVG(spec, w, colours) {
   const theme = spec.stale ? greyed(colours) : colours;
   const at = layout(spec, w);
@@ -180,7 +180,7 @@ export function sectionSVG(spec, w, colours) {
   const svg = `<svg xmlns="http://www.w3.org/2000/svg" class="section-drawing" role="img" aria-label="${escape(label)}" viewBox="0 0 ${w} ${h}" width="${w}" height="${h}" font-family='${SANS}' font-size="13">`
     + `<title>${escape(label)}</title><g>${body}${bands.svg}${m.guides}${split}${core(spec, at, theme)}`
     + `${potentialBand(spec, at, theme)}${head(spec, at, theme)}${scale.svg}${m.svg}${legend.svg}</g></svg>`;
-  return { svg, height: h };
+  return { svg, height: h, at };
 }
 
 export const sectionColours = (theme) => look('potential', theme);

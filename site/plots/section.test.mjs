@@ -3,6 +3,7 @@ import assert from 'node:assert/strict';
 import { THEMES } from './palette.js';
 import { columns, SYMBOLS } from './bands.js';
 import { describe, sectionSVG } from './section.js';
+import { linesAt } from './read.js';
 
 const x = Array.from({ length: 101 }, (_, i) => i * 0.07);
 const potential = x.map((d) => (d < 1.7 ? 0.22 * (1 - d / 1.7) ** 2 : 0));
@@ -93,4 +94,16 @@ test('the drawing is described in words, and what is typed is escaped', () => {
   // exp(−2 × 0.22/0.0494) = 1.35e-4, recomputed
   assert.equal(describe(spec), 'Section through one grain boundary; at 300 °C; core +0.136 C/m²; Φ₀ = 0.220 V; 2λ* = 3.4 nm; VO•• mobile, 1.4×10⁻⁴ times its interior value at the core; GdCe′ frozen');
   assert.match(draw({ note: '<b> & "x"' }).svg, /&lt;b&gt; &amp; &quot;x&quot;/);
+});
+
+test('the pointer reads distance, potential and concentration of its own side', () => {
+  const { at } = draw({ left: { x_nm: x, potential_V: potential.map((v) => v / 2), carriers: [{ relative: x.map(() => 1) }] } });
+  const right = linesAt(spec, at, at.px(0.85, 1)), left = linesAt(spec, at, at.px(0.85, -1));
+  assert.equal(right[0], '0.85 nm from the core');
+  // 0.22 × (1 − 0.85/1.7)² = 0.055 V, read between two points of a convex curve 0.07 nm apart
+  assert.ok(Math.abs(Number(right[1].match(/[\d.]+/)) - 0.055) < 1e-3, right[1]);
+  assert.ok(Math.abs(Number(left[1].match(/[\d.]+/)) - 0.0275) < 1e-3, left[1]);
+  assert.equal(left[2], 'VO•• 1 of its interior value');
+  assert.equal(linesAt(spec, at, at.centre), null);
+  assert.equal(linesAt(spec, at, 10), null);
 });

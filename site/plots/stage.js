@@ -6,9 +6,10 @@ import { chartSVG } from './chart.js';
 import { sectionSVG } from './section.js';
 import { sparkSVG } from './spark.js';
 import { listen } from './interact.js';
+import { readSection } from './read.js';
 
 const PRINT_WIDTH = 680; // px, the text width of A4 and Letter with 15 mm margins
-const acts = new Map(); // element → {kind, spec, width, view, frame}
+const acts = new Map(); // element → {kind, spec, view, width}
 let printing = false;
 
 const dark = typeof matchMedia === 'function' ? matchMedia('(prefers-color-scheme: dark)') : null;
@@ -22,11 +23,14 @@ const parse = (text) => new DOMParser().parseFromString(text, 'image/svg+xml').d
 
 const KINDS = {
   chart: chartSVG,
-  section: (spec, width, theme) => ({ svg: parse(sectionSVG(spec, width, theme).svg) }),
+  section: (spec, width, theme) => {
+    const { svg, at, height } = sectionSVG(spec, width, theme);
+    return { svg: parse(svg), frame: { ...at, height } };
+  },
   spark: (spec, width, theme) => ({ svg: parse(sparkSVG(spec, width, theme).svg) }),
 };
 
-// render draws without touching the page: the SVG element, and for charts its frame.
+// render draws without touching the page: the SVG element and its geometry.
 export const render = (kind, spec, width, theme, view) => KINDS[kind](spec, width, theme, view);
 
 export const actOf = (el) => acts.get(el);
@@ -38,8 +42,8 @@ function show(el) {
   const theme = THEMES[printing ? 'white' : themeName()];
   const { svg, frame } = render(act.kind, act.spec, width, theme, act.view);
   el.replaceChildren(svg);
+  if (act.kind === 'section') readSection(svg, act.spec, frame, theme);
   if (act.kind !== 'chart') return;
-  act.frame = frame;
   listen(svg, el, act.spec, frame, theme, (view) => zoom(el, view));
   if (act.view && !printing) el.append(wholeButton(el));
 }
@@ -78,7 +82,7 @@ export function draw(el, kind, spec) {
   if (!Object.hasOwn(KINDS, kind)) throw new Error(`plots: unknown kind (${kind}), expected chart, section or spark`);
   const old = acts.get(el);
   const view = old && old.kind === kind && sameAxes(old.spec, spec) ? old.view : null;
-  acts.set(el, { kind, spec, view, width: 0, frame: null });
+  acts.set(el, { kind, spec, view, width: 0 });
   el.classList.add('plot', `plot-${kind}`);
   sizes?.observe(el);
   if (!old) forget();
