@@ -1,7 +1,7 @@
 // What is written in and around the frame of a chart: title, axis titles, legend, labels at
 // the curves, decade labels and notes.
 
-import { look, SANS, SERIF } from './palette.js';
+import { look, SERIF } from './palette.js';
 import { pieces, width as textWidth } from './text.js';
 import { LABEL } from './frame.js';
 
