@@ -9,7 +9,8 @@ import (
 // The rule for one more arc. AICc alone takes a spurious arc in about one clean
 // spectrum of ten, so an arc must also be visible as one.
 const (
-	// MinAICcGain is how much AICc must fall.
+	// MinAICcGain is how much AICc must fall, after division by the inflation of the
+	// larger model: correlated residuals count their points several times.
 	MinAICcGain = 10.0
 	// MinShare is the least part of |Z| at the arc's own top (or, for an arc
 	// whose top lies above the window, at the window's end). A share of the total
@@ -40,35 +41,50 @@ func (g grid) choose(want int, h hold) (solution, []Trial, error) {
 		if 2*g.count() <= countParams(want)-len(h) {
 			return solution{}, nil, fmt.Errorf("%w: %d points for %d arcs", ErrTooFewPoints, g.count(), want)
 		}
-		sol, ok := g.fitCount(s, want, h, nil)
+		sol, _, ok := g.deepest(g.candidates(s, want, h), h)
 		if !ok {
-			return sol, nil, fmt.Errorf("%w: %d arcs", ErrNoFit, want)
+			return solution{}, nil, fmt.Errorf("%w: %d arcs", ErrNoFit, want)
 		}
 		return sol, nil, nil
 	}
 	var best solution
 	var trials []Trial
+	var before []float64
 	taken := -1
-	for k := 1; k <= MaxArcs; k++ {
-		if 2*g.count() <= countParams(k)+1 {
-			break
+	for k := 1; k <= MaxArcs && 2*g.count() > countParams(k)+1; k++ {
+		var extra [][]float64
+		if before != nil {
+			extra = append(extra, g.withSlowArc(before))
 		}
-		sol, ok := g.fitCount(s, k, h, nil)
-		if !ok {
-			continue
+		runs := g.candidates(s, k, h, extra...)
+		var row Trial
+		for i := 0; i < minimaTried; i++ {
+			sol, rest, ok := g.deepest(runs, h)
+			if !ok {
+				break
+			}
+			tr := g.trial(sol)
+			if taken >= 0 {
+				tr.Why = g.refuse(sol, trials[taken].AICc-tr.AICc)
+			}
+			if i == 0 {
+				before = sol.p
+			}
+			if i == 0 || tr.Why == "" {
+				row = tr
+			}
+			if tr.Why == "" {
+				best, taken = sol, len(trials)
+				break
+			}
+			runs = rest
+			if len(runs) == 0 || trials[taken].AICc-aicc(runs[0].sum, 2*g.count(), sol.free()) < MinAICcGain {
+				break // the next minimum gains too little to be worth finishing
+			}
 		}
-		free := sol.free()
-		tr := Trial{Arcs: k, AICc: aicc(sol.sum, 2*g.count(), free), Free: free,
-			Sigma: math.Sqrt(sol.sum / math.Max(1, float64(2*g.count()-free)))}
-		why := ""
-		if taken >= 0 {
-			why = g.refuse(sol, trials[taken].AICc-tr.AICc)
+		if row.Arcs > 0 {
+			trials = append(trials, row)
 		}
-		if why == "" {
-			best, taken = sol, len(trials)
-		}
-		tr.Why = why
-		trials = append(trials, tr)
 	}
 	if taken < 0 {
 		return best, nil, ErrNoFit
@@ -84,10 +100,24 @@ func (g grid) choose(want int, h hold) (solution, []Trial, error) {
 	return best, trials, nil
 }
 
+// minimaTried is how many minima of one number of arcs are looked at: the deepest may
+// split one process in two where another finds a further process.
+const minimaTried = 3
+
+func (g grid) trial(sol solution) Trial {
+	free := sol.free()
+	return Trial{Arcs: sol.arcs, AICc: aicc(sol.sum, 2*g.count(), free), Free: free,
+		Sigma: math.Sqrt(sol.sum / math.Max(1, float64(2*g.count()-free)))}
+}
+
 // refuse says why a solution with more arcs is not taken, "" if it is.
 func (g grid) refuse(sol solution, gain float64) string {
-	if !(gain > MinAICcGain) {
+	factor, _ := inflation(g.residuals(sol.p))
+	switch {
+	case !(gain > MinAICcGain):
 		return fmt.Sprintf("AICc falls by %.1f, more than %.0f needed", gain, MinAICcGain)
+	case !(gain/factor > MinAICcGain):
+		return fmt.Sprintf("AICc falls by %.1f, but residuals hang together: worth %.1f, more than %.0f needed", gain, gain/factor, MinAICcGain)
 	}
 	low, high := math.Exp(g.logw[len(g.logw)-1])/(2*math.Pi), math.Exp(g.logw[0])/(2*math.Pi)
 	arcs := ArcsOf(sol.p)
@@ -109,6 +139,15 @@ func (g grid) refuse(sol solution, gain float64) string {
 		}
 	}
 	return ""
+}
+
+// residuals of the used points relative to |Z|.
+func (g grid) residuals(p []float64) []complex128 {
+	out := make([]complex128, g.count())
+	for i, w := range g.omega {
+		out[i] = (ModelOf(p, w/(2*math.Pi)) - g.z[i]) * complex(g.weight[i], 0)
+	}
+	return out
 }
 
 func (s solution) heldN(k int) bool { return s.bound[ParamN(k)] < 0 && s.p[ParamN(k)] > minExponent }

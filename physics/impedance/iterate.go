@@ -80,37 +80,53 @@ func (g grid) refine(p, ref []float64, h hold, set numerics.LeastSquaresSettings
 	return numerics.LeastSquares(g.problem(len(ref), ref, h), p, set)
 }
 
-// fitCount fits k arcs: rough runs from several starts, then the best of them to
-// the end.
-func (g grid) fitCount(s *startGrid, k int, h hold, extra []float64) (solution, bool) {
+// sameMinimum: two runs whose sums agree to this part are one minimum.
+const sameMinimum = 1e-3
+
+type roughRun struct {
+	p, ref []float64
+	sum    float64
+}
+
+// candidates runs k arcs roughly from several starts, best first. extra holds
+// further starts in public parameters.
+func (g grid) candidates(s *startGrid, k int, h hold, extra ...[]float64) []roughRun {
 	params, refs := s.best(k, startKeep)
-	if extra != nil {
-		ref := refsFor(extra)
-		params, refs = append(params, internal(extra, ref)), append(refs, ref)
+	for _, e := range extra {
+		ref := refsFor(e)
+		params, refs = append(params, internal(e, ref)), append(refs, ref)
 	}
-	type rough struct {
-		p, ref []float64
-		sum    float64
-	}
-	var runs []rough
+	var runs []roughRun
 	for i := range params {
 		res, err := g.refine(params[i], refs[i], h.internal(refs[i]), numerics.LeastSquaresSettings{MaxIterations: 40, StepTolerance: 1e-3})
-		if err != nil || math.IsNaN(res.Sum) {
-			continue
+		if err == nil && !math.IsNaN(res.Sum) {
+			runs = append(runs, roughRun{res.Params, refs[i], res.Sum})
 		}
-		runs = append(runs, rough{res.Params, refs[i], res.Sum})
 	}
-	if len(runs) == 0 {
-		return solution{}, false
-	}
-	slices.SortStableFunc(runs, func(a, b rough) int { return cmp.Compare(a.sum, b.sum) })
-	sol, ok := g.finish(public(runs[0].p, runs[0].ref), h)
-	for _, r := range runs {
-		if r.sum < sol.sum*(1+1e-3) {
+	slices.SortStableFunc(runs, func(a, b roughRun) int { return cmp.Compare(a.sum, b.sum) })
+	return runs
+}
+
+// deepest finishes the first of the runs and returns those that went elsewhere.
+func (g grid) deepest(runs []roughRun, h hold) (sol solution, rest []roughRun, ok bool) {
+	for len(runs) > 0 && !ok {
+		sol, ok = g.finish(public(runs[0].p, runs[0].ref), h)
+		top := runs[0].sum * (1 + sameMinimum)
+		for len(runs) > 0 && runs[0].sum <= top {
 			sol.starts++
+			runs = runs[1:]
 		}
 	}
-	return sol, ok
+	return sol, runs, ok
+}
+
+// withSlowArc adds to a solution the flank of a process below the window, a start
+// the grid of time constants may miss because it gains little.
+func (g grid) withSlowArc(p []float64) []float64 {
+	lowest := g.logw[len(g.logw)-1]
+	const share, n = 0.05, 0.85 // of |Z| at the lowest frequency
+	lnR := math.Log(share/g.weight[len(g.weight)-1]) + 2*n
+	return append(slices.Clone(p), lnR, -lnR-n*(lowest-2), n)
 }
 
 // finish iterates from public parameters to the tight step, with the reference

@@ -100,7 +100,7 @@ func (g grid) lead(fit *Fit, sol solution, h hold, j int, t float64) Estimate {
 	if fit.Free[j] && e > 0 {
 		return Estimate{Value: v, High: v + e, Kind: AtMost}
 	}
-	step := fit.Sigma / g.leadWeight(j)
+	step := fit.Sigma * math.Sqrt(fit.Inflation) / g.leadWeight(j)
 	high, _, _ := g.limit(fit, sol, h, j, +1, step)
 	return Estimate{Value: v, High: high, Kind: AtMost}
 }
@@ -159,7 +159,7 @@ func (g grid) small(fit *Fit, sol solution, h hold, k int, fa *FittedArc) {
 // after a hundred times the first step if Δ never gets there.
 func (g grid) limit(fit *Fit, sol solution, h hold, j int, direction, step float64) (x float64, p []float64, ok bool) {
 	t := quantile95(fit.Freedom)
-	target := t * fit.Sigma
+	target := t * fit.Sigma * math.Sqrt(fit.Inflation)
 	if e := t * math.Sqrt(fit.Covariance.At(j, j)); e > 0 && fit.Free[j] && e < 3*step {
 		step = e
 	}

@@ -103,6 +103,7 @@ type Fit struct {
 	ChiSquared  float64 // Σ of squared residuals of the used points
 	Freedom     int
 	Sigma       float64 // √(ChiSquared/Freedom)
+	Inflation   float64 // factor on every variance for correlated residuals, 1 for white ones
 	Trials      []Trial // empty when the number of arcs was given
 	Iterations  int
 	Gradient    float64

@@ -61,10 +61,9 @@ func TestViolationsFail(t *testing.T) {
 		s.Points[i].Z = ModelOf(q, p.F)
 	}
 	v, err = KramersKronig(s)
-	if err != nil {
-		t.Fatal(err)
+	if err != nil || v.Pass {
+		t.Errorf("drift: %v, worst %.4f, threshold %.4f, pass %v", err, v.Worst, v.Threshold, v.Pass)
 	}
-	t.Logf("drift: worst %.4f, threshold %.4f, pass %v", v.Worst, v.Threshold, v.Pass)
 }
 
 func TestKramersKronigErrors(t *testing.T) {

@@ -54,7 +54,7 @@ type LeastSquaresProblem struct {
 
 // LeastSquaresSettings: the zero value is the documented default.
 type LeastSquaresSettings struct {
-	MaxIterations int     // 0: 200
+	MaxIterations int     // 0: 200; as many again may follow where the sum is flat
 	StepTolerance float64 // relative to Typical; 0: 1e-12
 }
 
@@ -191,23 +191,30 @@ func (w *workspace) run() LeastSquaresResult {
 			return w.result(Stalled, last)
 		}
 	}
+	w.iter = w.maxIter
 	return w.result(IterationLimit, last)
 }
 
-// polish runs undamped steps: the sum can no longer tell better from worse, the
-// gradient still can.
+// polish runs on when the sum can no longer tell better from worse but the gradient
+// still can: undamped, or, where large residuals on a curved surface make the
+// undamped step grow, with as much damping as makes it shrink.
 func (w *workspace) polish() LeastSquaresResult {
-	last := math.Inf(1)
-	for ; w.iter <= w.maxIter; w.iter++ {
-		if _, ok := w.solve(0); !ok {
+	last, damping := math.Inf(1), 0.0
+	for end := w.iter + w.maxIter; w.iter <= end; w.iter++ {
+		if _, ok := w.solve(damping); !ok {
 			return w.result(Stalled, last)
 		}
 		size := w.move()
-		if size >= 0.9*last && size < 1e-7 {
-			return w.result(RoundingFloor, size)
-		}
-		if size >= 1e-2 && size >= last {
-			return w.result(Stalled, size)
+		if size >= 0.9*last {
+			if size < 1e-8 {
+				return w.result(RoundingFloor, size)
+			}
+			damping = math.Max(4*damping, 0.1)
+			if damping > 1e6 {
+				return w.result(Stalled, last)
+			}
+			last = math.Inf(1)
+			continue
 		}
 		w.p, w.trial = w.trial, w.p
 		w.linearise()
@@ -311,7 +318,7 @@ func (w *workspace) move() float64 {
 }
 
 func (w *workspace) result(status Status, last float64) LeastSquaresResult {
-	res := LeastSquaresResult{Params: w.p, Sum: w.sum, Bound: w.bound, LastStep: last, Iterations: min(w.iter, w.maxIter), Status: status}
+	res := LeastSquaresResult{Params: w.p, Sum: w.sum, Bound: w.bound, LastStep: last, Iterations: w.iter, Status: status}
 	if status == NotFinite {
 		return res
 	}
