@@ -116,14 +116,14 @@ func medianC(fits []*Fit, controls []Controls, choice [][]Role) map[Role]float64
 	}
 	out := map[Role]float64{}
 	for r, v := range seen {
-		slices.Sort(v)
-		out[r] = v[len(v)/2]
+		out[r] = median(v)
 	}
 	return out
 }
 
-// apply writes the roles and says why.
+// apply writes the roles and says why; notes of an earlier assignment are dropped.
 func apply(f *Fit, c Controls, roles []Role, together bool) {
+	f.Notes = f.Notes[:f.ownNotes]
 	for k := range f.Arcs {
 		a := &f.Arcs[k]
 		a.Role = roles[k]

@@ -92,6 +92,7 @@ func fitOnce(s Spectrum, c Controls, earlier *Fit) (Fit, error) {
 	if earlier != nil {
 		fit.Trials = earlier.Trials
 	}
+	fit.ownNotes = len(fit.Notes)
 	assign([]*Fit{&fit}, []Controls{c})
 	return fit, nil
 }

@@ -3,6 +3,8 @@ package impedance
 import (
 	"context"
 	"fmt"
+	"math"
+	"slices"
 )
 
 // Progress reports that done of total spectra are finished; may be nil.
@@ -40,5 +42,54 @@ func FitAll(ctx context.Context, spectra []Spectrum, controls []Controls, progre
 		}
 	}
 	assign(ptrs, each)
+	for _, role := range []Role{Interior, Boundary, Contact} {
+		offTheLine(ptrs, role)
+	}
 	return fits, nil
+}
+
+// offLine is the factor off the common Arrhenius line that is remarked upon: a
+// wrong role or a bad fit, rarely the material.
+const offLine = 2.0
+
+// offTheLine notes resistances far off the line of ln R over 1/T through the other
+// temperatures, drawn by the median of slopes (Theil 1950, Sen 1968).
+func offTheLine(fits []*Fit, role Role) {
+	var x, y []float64
+	var who []*Fit
+	for _, f := range fits {
+		if a := f.Arc(role); a != nil && a.R.Kind == Measured && f.T > 0 {
+			x, y, who = append(x, 1/f.T), append(y, math.Log(a.R.Value)), append(who, f)
+		}
+	}
+	if len(x) < 4 {
+		return
+	}
+	var slopes []float64
+	for i := range x {
+		for j := range i {
+			if x[i] != x[j] {
+				slopes = append(slopes, (y[i]-y[j])/(x[i]-x[j]))
+			}
+		}
+	}
+	if len(slopes) == 0 {
+		return
+	}
+	slope := median(slopes)
+	rest := make([]float64, len(x))
+	for i := range x {
+		rest[i] = y[i] - slope*x[i]
+	}
+	level := median(slices.Clone(rest))
+	for i, f := range who {
+		if off := math.Exp(rest[i] - level); off > offLine || off < 1/offLine {
+			f.note(off, "the %s resistance is %.2g times what the other temperatures lead to expect", role, off)
+		}
+	}
+}
+
+func median(v []float64) float64 {
+	slices.Sort(v)
+	return v[len(v)/2]
 }

@@ -110,6 +110,7 @@ type Fit struct {
 	Status      string
 	StartsAgree string
 	Notes       []Note
+	ownNotes    int // notes that do not come from the assignment of roles
 }
 
 // Model is the fitted impedance at f in Hz.

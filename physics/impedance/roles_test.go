@@ -1,0 +1,115 @@
+package impedance
+
+import (
+	"context"
+	"math"
+	"math/rand/v2"
+	"strings"
+	"testing"
+)
+
+// Capacitances of Irvine, Sinclair, West, Adv. Mater. 2, 132 (1990), Table 1 (from
+// memory), for thickness/area = 1 cm⁻¹: bulk 1e-12, boundary 1e-11…1e-8, contact
+// 1e-7…1e-5 F.
+func TestRolesByCapacitance(t *testing.T) {
+	arc := func(r, c float64) Arc { return Arc{R: r, Q: c, N: 1} }
+	for _, c := range []struct {
+		name string
+		arcs []Arc
+		cell float64 // 1/m
+		want []Role
+	}{
+		{"all three", []Arc{arc(1e4, 5e-12), arc(1e5, 1e-9), arc(1e5, 1e-6)}, 100, []Role{Interior, Boundary, Contact}},
+		{"interior above the window", []Arc{arc(1e5, 1e-9), arc(1e5, 1e-6)}, 0, []Role{Boundary, Contact}},
+		{"no boundary", []Arc{arc(1e5, 5e-12), arc(1e6, 2e-6)}, 0, []Role{Interior, Contact}},
+		{"single crystal", []Arc{arc(1e5, 5e-12)}, 100, []Role{Interior}},
+		{"high permittivity, thin and wide: 4e-9 F is ε_r 2260 at 5 1/m", []Arc{arc(1e4, 4e-9), arc(1e5, 3e-7)}, 5, []Role{Interior, Boundary}},
+	} {
+		p := append([]float64{0, 0}, params(0, 0, c.arcs...)[2:]...)
+		s := synthetic(p, 1e-2, 1e8, 101, 0.002, rand.New(rand.NewPCG(1, 1)))
+		f, err := FitArcs(s, Controls{Arcs: len(c.arcs), CellConstant: c.cell})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for k, w := range c.want {
+			if f.Arcs[k].Role != w {
+				t.Errorf("%s: arc %d is %s (%s), want %s", c.name, k+1, f.Arcs[k].Role, f.Arcs[k].RoleWhy, w)
+			}
+		}
+		if c.cell > 0 {
+			want := c.arcs[0].Q * c.cell / 8.8541878188e-12
+			if math.Abs(f.Arcs[0].RelativeEpsilon/want-1) > 0.01 {
+				t.Errorf("%s: ε_r %v, want %v", c.name, f.Arcs[0].RelativeEpsilon, want)
+			}
+		}
+	}
+}
+
+// A spectrum whose boundary is ten times too large stands out from the others.
+func TestOffTheLine(t *testing.T) {
+	rng := rand.New(rand.NewPCG(8, 8))
+	var all []Spectrum
+	for i := 0; i < 6; i++ {
+		T := 450 + 25*float64(i)
+		g := math.Exp(9000 * (1/T - 1/500.0))
+		gb := 3e5 * g
+		if i == 3 {
+			gb *= 10
+		}
+		s := synthetic(params(0, 0, Arc{5e4 * g, 1e-11, 1}, Arc{gb, 1e-9, 0.98}), 0.1, 2e6, 61, 0.003, rng)
+		s.T = T
+		all = append(all, s)
+	}
+	fits, err := FitAll(context.Background(), all, nil, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, f := range fits {
+		noted := 0
+		for _, n := range f.Notes {
+			if strings.Contains(n.Text, "boundary resistance is") {
+				noted++
+				if math.Abs(n.Value/10-1) > 0.1 {
+					t.Errorf("factor %v, want 10", n.Value)
+				}
+			}
+		}
+		if (noted == 1) != (i == 3) {
+			t.Errorf("spectrum %d: %d notes: %+v", i, noted, f.Notes)
+		}
+	}
+}
+
+// Boundaries spread over two decades of time constants are no constant-phase
+// element: the fit must say so and widen its intervals, so that the total
+// resistance, which is known, lies within.
+func TestMisfitIsSaid(t *testing.T) {
+	rng := rand.New(rand.NewPCG(5, 5))
+	said, held := 0, 0
+	const runs = 40
+	for i := 0; i < runs; i++ {
+		p := []float64{0, 0}
+		total := 0.0
+		for k := 0; k < 9; k++ { // box of time constants, 1e-5…1e-3 s
+			p = append(p, math.Log(1e4), math.Log(1e-5*math.Pow(10, float64(k)/4)/1e4), 1)
+			total += 1e4
+		}
+		s := synthetic(p, 0.1, 2e6, 61, 0.002, rng)
+		f, err := FitArcs(s, Controls{Arcs: 1})
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, n := range f.Notes {
+			if strings.Contains(n.Text, "hang together") {
+				said++
+			}
+		}
+		if e := f.Arcs[0].R; e.Low <= total && total <= e.High {
+			held++
+		}
+	}
+	t.Logf("said %d, held %d of %d", said, held, runs)
+	if said != runs || held < runs*9/10 {
+		t.Errorf("misfit said %d times, total within the interval %d times of %d", said, held, runs)
+	}
+}
