@@ -48,7 +48,7 @@ need_node() {
 	((major >= 18)) || fail "Node is too old ($(node --version)), expected 18 or newer"
 	if [[ ! -e site/node_modules/.package-lock.json || site/package-lock.json -nt site/node_modules/.package-lock.json ]]; then
 		say "fetching the plots' library"
-		(cd site && npm ci --no-audit --no-fund --silent)
+		(cd site && npm ci --no-audit --no-fund --loglevel=error)
 		touch site/node_modules/.package-lock.json
 	fi
 }
@@ -124,14 +124,23 @@ check_format() {
 	GOOS=js GOARCH=wasm go vet ./physics/... ./wasm/...
 }
 
-# The same tests of the core where the page runs it.
+# wasm_go runs Go for WebAssembly with few variables: the many of a CI machine
+# overflow what a program gets from Go's support script.
+wasm_go() {
+	local keep=() name value
+	while IFS='=' read -r -d '' name value; do
+		case $name in GO* | PATH | HOME | TMPDIR | XDG_CACHE_HOME) keep+=("$name=$value") ;; esac
+	done < <(env -0)
+	env -i "${keep[@]}" GOOS=js GOARCH=wasm go "$@"
+}
+
+wasm_exec() { printf '%s/lib/wasm/go_js_wasm_exec' "$(go env GOROOT)"; }
+
+# The tests of the core where the page runs it.
 test_wasm() {
 	local packages
-	packages=$(go list ./physics/... ./wasm/engine)
-	[[ -n $packages ]] || return 0
-	# The many variables of a CI machine overflow what Go's support script passes on.
-	env -i PATH="$PATH" HOME="$HOME" GOOS=js GOARCH=wasm \
-		go test -short -exec="$(go env GOROOT)/lib/wasm/go_js_wasm_exec" $packages
+	mapfile -t packages < <(go list ./physics/... ./wasm/engine)
+	wasm_go test -short -exec="$(wasm_exec)" "${packages[@]}"
 }
 
 # pack_faulty builds the page of mistakes that the browser tests break on purpose.
@@ -153,7 +162,7 @@ test_all() {
 	step "format, vet"; check_format
 	step "generated files"; check_generated
 	step "tests, native"; go test ./...
-	step "tests of the plots"; (cd site && npm test --silent)
+	step "tests of the plots"; (cd site && node --test plots/*.test.mjs)
 	step "tests, WebAssembly"; test_wasm
 	step "build"; build
 	step "tests, browser"; test_browser
@@ -165,8 +174,7 @@ bench() {
 	need_node
 	step "native"; go test -run '^$' -bench . -benchmem ./physics/... ./wasm/...
 	step "WebAssembly"
-	env -i PATH="$PATH" HOME="$HOME" GOOS=js GOARCH=wasm \
-		go test -run '^$' -bench . -exec="$(go env GOROOT)/lib/wasm/go_js_wasm_exec" ./physics/...
+	wasm_go test -run '^$' -bench . -exec="$(wasm_exec)" ./physics/...
 	step "page"; build; test_browser -run '^$' -bench . -benchtime 20x
 }
 
