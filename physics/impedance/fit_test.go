@@ -359,6 +359,14 @@ func TestControls(t *testing.T) {
 	if in == nil || in.Arc.N != 0.9 || in.N.Kind != Held || f.LeadR.Value != 40 || f.LeadR.Kind != Held || f.Covariance.At(ParamN(0), ParamN(0)) != 0 {
 		t.Errorf("held n: %+v, lead %+v", in, f.LeadR)
 	}
+	// Q held with n free: the value must come back exactly, and the fit near the truth
+	f, err = FitArcs(s, Controls{Arcs: 2, Hold: []Hold{{Quantity: ArcQ, Arc: 1, Value: 4e-8}, {Quantity: ArcResistance, Arc: 0, Value: 2e4}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if a := f.Arcs[1]; math.Abs(a.Arc.Q/4e-8-1) > 1e-14 || a.Q.Kind != Held || math.Abs(a.Arc.N-0.88) > 0.003 || f.Arcs[0].R.Kind != Held || math.Abs(f.Arcs[0].Arc.R/2e4-1) > 1e-14 {
+		t.Errorf("held Q and R: %+v", f.Arcs)
+	}
 	bad := s
 	bad.Points = append([]Point(nil), s.Points...)
 	for _, i := range []int{10, 11, 30} {

@@ -22,7 +22,6 @@ const (
 type solution struct {
 	arcs    int
 	p       []float64 // public parameters: ln Q
-	ref     []float64 // ln ωᵣ per arc
 	sum     float64
 	bound   []int
 	inverse *mat.SymDense // (JᵀJ)⁻¹ in public parameters, nil when singular
@@ -44,8 +43,8 @@ func (s solution) free() int {
 // hold maps positions of the parameter vector to values, in public parameters.
 type hold map[int]float64
 
-// problem builds the box for k arcs; held parameters have equal bounds. ref is
-// needed because a held ln Q is held at ln Q + n ln ωᵣ only when n is held too.
+// problem builds the box for k arcs in internal parameters; held parameters have
+// equal bounds.
 func (g grid) problem(k int, ref []float64, h hold) numerics.LeastSquaresProblem {
 	n := countParams(k)
 	zmin, zmax, lmin := math.Inf(1), 0.0, math.Inf(1)
@@ -75,32 +74,52 @@ func (g grid) problem(k int, ref []float64, h hold) numerics.LeastSquaresProblem
 	return pr
 }
 
-// refine iterates from a start given in internal parameters.
-func (g grid) refine(p, ref []float64, h hold, set numerics.LeastSquaresSettings) (numerics.LeastSquaresResult, error) {
-	return numerics.LeastSquares(g.problem(len(ref), ref, h), p, set)
+// refine iterates from public parameters; the result's parameters are public, its
+// inverse internal, by the returned ln ωᵣ.
+func (g grid) refine(p []float64, h hold, set numerics.LeastSquaresSettings) (numerics.LeastSquaresResult, []float64, error) {
+	ref := g.references(p, h)
+	res, err := numerics.LeastSquares(g.problem(len(ref), ref, h.internal(ref)), internal(p, ref), set)
+	if err == nil && math.IsNaN(res.Sum) {
+		err = ErrNoFit
+	}
+	if err != nil {
+		return res, ref, err
+	}
+	res.Params = public(res.Params, ref)
+	return res, ref, nil
+}
+
+// references puts ωᵣ of each arc at its top, or at the end of the window nearest to
+// it. Where Q is held and n is not, ln ωᵣ = 0: only ln Q itself can then be held.
+func (g grid) references(p []float64, h hold) []float64 {
+	ref := refsFor(p)
+	lo, hi := g.logw[len(g.logw)-1], g.logw[0]
+	for a := range ref {
+		_, heldQ := h[ParamQ(a)]
+		_, heldN := h[ParamN(a)]
+		if ref[a] = math.Min(math.Max(ref[a], lo), hi); heldQ && !heldN {
+			ref[a] = 0
+		}
+	}
+	return ref
 }
 
 // sameMinimum: two runs whose sums agree to this part are one minimum.
 const sameMinimum = 1e-3
 
 type roughRun struct {
-	p, ref []float64
-	sum    float64
+	p   []float64
+	sum float64
 }
 
 // candidates runs k arcs roughly from several starts, best first. extra holds
 // further starts in public parameters.
 func (g grid) candidates(s *startGrid, k int, h hold, extra ...[]float64) []roughRun {
-	params, refs := s.best(k, startKeep)
-	for _, e := range extra {
-		ref := refsFor(e)
-		params, refs = append(params, internal(e, ref)), append(refs, ref)
-	}
 	var runs []roughRun
-	for i := range params {
-		res, err := g.refine(params[i], refs[i], h.internal(refs[i]), numerics.LeastSquaresSettings{MaxIterations: 40, StepTolerance: 1e-3})
-		if err == nil && !math.IsNaN(res.Sum) {
-			runs = append(runs, roughRun{res.Params, refs[i], res.Sum})
+	for _, p := range append(s.best(k, startKeep), extra...) {
+		res, _, err := g.refine(p, h, numerics.LeastSquaresSettings{MaxIterations: 40, StepTolerance: 1e-3})
+		if err == nil {
+			runs = append(runs, roughRun{res.Params, res.Sum})
 		}
 	}
 	slices.SortStableFunc(runs, func(a, b roughRun) int { return cmp.Compare(a.sum, b.sum) })
@@ -110,7 +129,7 @@ func (g grid) candidates(s *startGrid, k int, h hold, extra ...[]float64) []roug
 // deepest finishes the first of the runs and returns those that went elsewhere.
 func (g grid) deepest(runs []roughRun, h hold) (sol solution, rest []roughRun, ok bool) {
 	for len(runs) > 0 && !ok {
-		sol, ok = g.finish(public(runs[0].p, runs[0].ref), h)
+		sol, ok = g.finish(runs[0].p, h)
 		top := runs[0].sum * (1 + sameMinimum)
 		for len(runs) > 0 && runs[0].sum <= top {
 			sol.starts++
@@ -129,22 +148,15 @@ func (g grid) withSlowArc(p []float64) []float64 {
 	return append(slices.Clone(p), lnR, -lnR-n*(lowest-2), n)
 }
 
-// finish iterates from public parameters to the tight step, with the reference
-// frequency of each arc at its own top.
+// finish iterates to the tight step, with the reference frequency of each arc at its
+// own top.
 func (g grid) finish(p []float64, h hold) (solution, bool) {
-	p = sortedArcs(p)
-	ref := refsFor(p)
-	for a := range ref { // keep ωᵣ inside the window
-		lo, hi := g.logw[len(g.logw)-1], g.logw[0]
-		ref[a] = math.Min(math.Max(ref[a], lo), hi)
-	}
-	res, err := g.refine(internal(p, ref), ref, h.internal(ref), numerics.LeastSquaresSettings{})
-	if err != nil || math.IsNaN(res.Sum) {
+	res, ref, err := g.refine(sortedArcs(p), h, numerics.LeastSquaresSettings{})
+	if err != nil {
 		return solution{}, false
 	}
-	sol := solution{arcs: len(ref), p: public(res.Params, ref), ref: ref, sum: res.Sum, bound: res.Bound, run: res}
-	sol.inverse = publicInverse(res.Inverse, ref, res.Bound)
-	return sol, true
+	return solution{arcs: len(ref), p: res.Params, sum: res.Sum, bound: res.Bound, run: res,
+		inverse: publicInverse(res.Inverse, ref, res.Bound)}, true
 }
 
 // internal turns ln Q into ln(Q ωᵣⁿ).
@@ -176,7 +188,7 @@ func (h hold) internal(ref []float64) hold {
 		n, heldN := h[ParamN(a)]
 		if heldQ && heldN {
 			out[ParamQ(a)] = q + n*lr
-		}
+		} // with n free lr is 0, see references
 	}
 	return out
 }

@@ -419,3 +419,89 @@ func FuzzRead(f *testing.F) {
 		sameSpectra(t, r.Spectra, back.Spectra)
 	})
 }
+
+// Header cells as they occur; common practice of the trade, no source.
+func TestReadHeader(t *testing.T) {
+	for _, c := range []struct {
+		cell string
+		q    ColumnQuantity
+		unit string
+	}{
+		{"f", Frequency, ""}, {"Freq. [Hz]", Frequency, "Hz"}, {"frequency_Hz", Frequency, "Hz"}, {"f/kHz", Frequency, "kHz"}, {"Frequency, MHz", Frequency, "MHz"},
+		{"f in mHz", Frequency, "mHz"}, {"Hz", Frequency, "Hz"}, {"ν / Hz", Frequency, "Hz"}, {"Frequenz (Hz)", Frequency, "Hz"}, {"FREQ(HZ)", Frequency, "Hz"},
+		{"ω", AngularFrequency, ""}, {"omega (rad/s)", AngularFrequency, "rad/s"}, {"angular frequency / s^-1", AngularFrequency, "rad/s"}, {"omega_rad/s", AngularFrequency, "rad/s"}, {"w/s-1", AngularFrequency, "rad/s"},
+		{"Z'", RealPart, ""}, {"Z′ / Ω", RealPart, "Ω"}, {"Zre_ohm", RealPart, "Ω"}, {"Re(Z)/Ohm", RealPart, "Ω"}, {"Z_real [kOhm]", RealPart, "kΩ"}, {"Re Z (MΩ)", RealPart, "MΩ"}, {"real", RealPart, ""}, {"Z' (ohms)", RealPart, "Ω"}, {"ReZ_Mohm", RealPart, "MΩ"}, {"R/mohm", RealPart, "mΩ"},
+		{"Z''", ImaginaryPart, ""}, {"Z\"/ohm", ImaginaryPart, "Ω"}, {"Z″ (GΩ)", ImaginaryPart, "GΩ"}, {"Im(Z) [Ω]", ImaginaryPart, "Ω"}, {"Z_im", ImaginaryPart, ""}, {"imag", ImaginaryPart, ""}, {"Zimag (Ohm)", ImaginaryPart, "Ω"},
+		{"-Z''", NegatedImaginary, ""}, {"−Z″ / kΩ", NegatedImaginary, "kΩ"}, {"-Im(Z)/Ohm", NegatedImaginary, "Ω"}, {"neg Zim", NegatedImaginary, ""}, {"- Im Z", NegatedImaginary, ""}, {"minus Z''", NegatedImaginary, ""}, {"-Z_im_ohm", NegatedImaginary, "Ω"},
+		{"|Z|", Modulus, ""}, {"|Z| / kOhm", Modulus, "kΩ"}, {"Zmod", Modulus, ""}, {"Impedance magnitude (Ohm)", Modulus, "Ω"}, {"mod(Z)", Modulus, ""}, {"|Z|_ohm", Modulus, "Ω"},
+		{"phase", Phase, ""}, {"phase/deg", Phase, "deg"}, {"theta (°)", Phase, "deg"}, {"φ / rad", Phase, "rad"}, {"Phase Angle [degrees]", Phase, "deg"}, {"arg(Z)", Phase, ""}, {"-phase/°", NegatedPhase, "deg"}, {"phi_mrad", Phase, "mrad"},
+		{"T/K", Temperature, "K"}, {"T", Temperature, ""}, {"temperature_C", Temperature, "°C"}, {"Temp. (°C)", Temperature, "°C"}, {"t/°C", Temperature, "°C"}, {"Temperature [degC]", Temperature, "°C"}, {"temp_K", Temperature, "K"}, {"temperature in celsius", Temperature, "°C"},
+		{"t", Ignored, ""}, {"t/s", Ignored, ""}, {"time", Ignored, ""}, {"Z'/V", Ignored, ""}, {"Y'/S", Ignored, ""}, {"E/V", Ignored, ""}, {"", Ignored, ""}, {"#", Ignored, ""}, {"C/F", Ignored, ""},
+	} {
+		q, u, odd := readHeader(c.cell)
+		if q != c.q || u.label != c.unit || odd != "" {
+			t.Errorf("%q: %s in %q (%s), want %s in %q", c.cell, q, u.label, odd, c.q, c.unit)
+		}
+	}
+	for _, cell := range []string{"Z' (Ohm cm²)", "Z' / Ohm*cm", "Re(Z) [kΩ m]"} {
+		if _, _, odd := readHeader(cell); odd == "" {
+			t.Errorf("%q: an area-specific unit passes", cell)
+		}
+	}
+}
+
+func TestReadOddLayouts(t *testing.T) {
+	z := func(f float64) (float64, float64) { v := parallelRC(f); return real(v), imag(v) }
+	build := func(head, format string, change func(string) string) string {
+		return head + table("", func(f float64, _ complex128) string {
+			a, b := z(f)
+			return change(fmt.Sprintf(format, f, a, b))
+		})
+	}
+	same := func(s string) string { return s }
+	for name, text := range map[string]string{
+		"blanks and decimal commas":    build("f / Hz   Z' / Ohm   -Z'' / Ohm\n", "%v  %v  %v", comma),
+		"single blanks in header":      build("f (Hz) Z' (Ohm) Z'' (Ohm)\n", "%v %v %v", same),
+		"tabs and decimal commas":      build("f/Hz\tZ'/Ohm\tZ''/Ohm\n", "%v\t%v\t%v", comma),
+		"comma and blank":              build("f/Hz, Z'/Ohm, Z''/Ohm\n", "%v, %v, %v", same),
+		"trailing delimiters":          build("f/Hz,Z'/Ohm,Z''/Ohm,\n", "%v,%v,%v,", same),
+		"number sign heads numbers":    build("#\tf/Hz\tZ'/Ohm\tZ''/Ohm\n", "7\t%v\t%v\t%v", same),
+		"quoted numbers":               build("\"f/Hz\",\"Z'/Ohm\",\"Z''/Ohm\"\n", "\"%v\",\"%v\",\"%v\"", same),
+		"empty column":                 build("f/Hz;;Z'/Ohm;Z''/Ohm\n", "%v;;%v;%v", same),
+		"text column":                  build("mark;f/Hz;Z'/Ohm;Z''/Ohm\n", "ok;%v;%v;%v", same),
+		"typographic minus":            build("f/Hz;Z'/Ohm;Z''/Ohm\n", "%v;%v;%v", func(s string) string { return strings.ReplaceAll(s, "-", "−") }),
+		"header repeated below itself": build("f/Hz;Z'/Ohm;Z''/Ohm\nf/Hz;Z'/Ohm;Z''/Ohm\n", "%v;%v;%v", same),
+		"old Mac line ends":            strings.ReplaceAll(build("f/Hz,Z'/Ohm,Z''/Ohm\n", "%v,%v,%v", same), "\n", "\r"),
+		"head with numbers":            build("12 34\nrun 5; area 0.5; 3\nf/Hz,Z'/Ohm,Z''/Ohm\n", "%v,%v,%v", same),
+	} {
+		r, err := Read("p_300C.csv", []byte(text), ReadOptions{})
+		if err != nil {
+			t.Errorf("%s: %v", name, err)
+			continue
+		}
+		if len(r.Spectra) != 1 || len(r.Spectra[0].Points) != len(tableFrequencies) {
+			t.Errorf("%s: %+v", name, r.Groups)
+			continue
+		}
+		for i, p := range r.Spectra[0].Points {
+			if f := tableFrequencies[i]; p.F != f || cmplx.Abs(p.Z/parallelRC(f)-1) > 1e-13 {
+				t.Errorf("%s: point %d is %v %v\n%+v", name, i, p.F, p.Z, r.Columns)
+				break
+			}
+		}
+	}
+}
+
+func BenchmarkReadMaxRows(b *testing.B) {
+	var text strings.Builder
+	text.WriteString("f/Hz,Z'/ohm,Z''/ohm,T/K\n")
+	for i := range MaxRows {
+		fmt.Fprintf(&text, "%d,%d,-%d,%d\n", i%100+1, i, i+1, 300+i/100)
+	}
+	data := []byte(text.String())
+	for b.Loop() {
+		if _, err := Read("x", data, ReadOptions{}); err != nil {
+			b.Fatal(err)
+		}
+	}
+}

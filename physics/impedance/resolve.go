@@ -209,14 +209,9 @@ func (g grid) profile(p []float64, j int, x float64, h hold) ([]float64, float64
 	held[j] = x
 	q := slices.Clone(p)
 	q[j] = x
-	ref := refsFor(q)
-	lo, hi := g.logw[len(g.logw)-1], g.logw[0]
-	for a := range ref {
-		ref[a] = math.Min(math.Max(ref[a], lo), hi)
-	}
-	res, err := g.refine(internal(q, ref), ref, held.internal(ref), numerics.LeastSquaresSettings{MaxIterations: 60, StepTolerance: 1e-6})
-	if err != nil || math.IsNaN(res.Sum) {
+	res, _, err := g.refine(q, held, numerics.LeastSquaresSettings{MaxIterations: 60, StepTolerance: 1e-6})
+	if err != nil {
 		return nil, 0, false
 	}
-	return public(res.Params, ref), res.Sum, true
+	return res.Params, res.Sum, true
 }

@@ -83,8 +83,8 @@ type start struct {
 	coeff []float64 // lead R, lead L, then R per arc
 }
 
-// best returns up to keep starts for k arcs, as parameter vectors with their ln ωᵣ.
-func (s *startGrid) best(k, keep int) (params, logRefs [][]float64) {
+// best returns up to keep starts for k arcs, as public parameters.
+func (s *startGrid) best(k, keep int) [][]float64 {
 	var all []start
 	pick := make([]int, k)
 	var walk func(level, from int)
@@ -111,11 +111,11 @@ func (s *startGrid) best(k, keep int) (params, logRefs [][]float64) {
 			kept = append(kept, st)
 		}
 	}
-	for _, st := range kept {
-		p, ref := s.params(st)
-		params, logRefs = append(params, p), append(logRefs, ref)
+	out := make([][]float64, len(kept))
+	for i, st := range kept {
+		out[i] = s.params(st)
 	}
-	return params, logRefs
+	return out
 }
 
 // near: no time constant differs by more than one grid step.
@@ -211,14 +211,13 @@ func (s *startGrid) solve(idx []int) (x [8]float64, gain float64, ok bool) {
 	return x, gain, true
 }
 
-func (s *startGrid) params(st start) (p, logRef []float64) {
-	p = append(p, st.coeff[0], st.coeff[1])
+func (s *startGrid) params(st start) []float64 {
+	p := []float64{st.coeff[0], st.coeff[1]}
 	for k, j := range st.tau {
 		r := math.Log(st.coeff[2+k])
-		p = append(p, r, -r, startN) // Q ωᵣⁿ R = 1 at ωᵣ = 1/τ
-		logRef = append(logRef, -s.logTau[j])
+		p = append(p, r, startN*s.logTau[j]-r, startN) // RQ = τⁿ
 	}
-	return p, logRef
+	return p
 }
 
 func dot(a, b []float64) float64 {

@@ -12,7 +12,8 @@ import (
 const (
 	MaxRows     = 20000 // data rows in one file, and points in one set of spectra
 	MinPoints   = 6     // usable points in one spectrum
-	headAllowed = 5000  // comment and head lines tolerated beside MaxRows
+	MaxBytes    = 64 << 20
+	headAllowed = 5000 // comment and head lines tolerated beside MaxRows
 	maxLine     = 1 << 16
 )
 
@@ -35,6 +36,9 @@ func decode(name string, data []byte) (text, encoding string, err error) {
 		return "", "", tooMany(name, n)
 	} else if cr := bytes.Count(data, []byte{'\r'}); n == 0 && cr > MaxRows+headAllowed {
 		return "", "", tooMany(name, cr)
+	}
+	if len(data) > MaxBytes {
+		return "", "", &ReadError{File: name, What: fmt.Sprintf("the file is too large (%d MB)", len(data)>>20), Expected: fmt.Sprintf("at most %d MB", MaxBytes>>20)}
 	}
 	switch {
 	case bytes.HasPrefix(data, []byte{0xEF, 0xBB, 0xBF}):
