@@ -94,13 +94,24 @@ func total(f *Fit, c Controls, pick []Role, medians map[Role]float64) float64 {
 			p += 1.5 // leaving an arc unnamed costs more than a decade and a half off band
 			continue
 		}
-		logC := math.Log10(f.Arcs[k].Arc.Capacitance() * c.cell())
+		logC := math.Log10(f.seenCapacitance(k) * c.cell())
 		p += bands[r-1].penalty(logC)
 		if m, ok := medians[r]; ok {
 			p += 0.5 * math.Max(0, math.Abs(logC-m)-driftDecades)
 		}
 	}
 	return p
+}
+
+// seenCapacitance is the capacitance of arc k, or, when its top lies below the window
+// and its resistance is open, what its element is worth at the lowest frequency:
+// Im Y/ω = Q ω^{n−1} sin(nπ/2).
+func (f *Fit) seenCapacitance(k int) float64 {
+	a := f.Arcs[k].Arc
+	if !f.Arcs[k].below {
+		return a.Capacitance()
+	}
+	return a.Q * math.Pow(2*math.Pi*f.lowest, a.N-1) * math.Sin(a.N*math.Pi/2)
 }
 
 // medianC is the median log capacitance per role over the fits whose arc has its
@@ -127,7 +138,7 @@ func apply(f *Fit, c Controls, roles []Role, together bool) {
 	for k := range f.Arcs {
 		a := &f.Arcs[k]
 		a.Role = roles[k]
-		cap := a.Arc.Capacitance()
+		cap := f.seenCapacitance(k)
 		if c.CellConstant > 0 {
 			a.RelativeEpsilon = cap * c.CellConstant / quantity.VacuumPermittivity
 		}

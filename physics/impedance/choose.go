@@ -9,15 +9,19 @@ import (
 // The rule for one more arc. AICc alone takes a spurious arc in about one clean
 // spectrum of ten, so an arc must also be visible as one.
 const (
-	// MinAICcGain is how much AICc must fall, after division by the inflation of the
-	// larger model: correlated residuals count their points several times.
+	// MinAICcGain is how much AICc must fall. Where residuals hang together the gain
+	// is first divided by the inflation of the larger model, for each point then
+	// counts several times; not when the residual falls to plainLoss or less.
 	MinAICcGain = 10.0
+	plainLoss   = 2.0 / 3
 	// MinShare is the least part of |Z| at the arc's own top (or, for an arc
 	// whose top lies above the window, at the window's end). A share of the total
 	// resistance would refuse the interior of every strongly blocked ceramic.
 	MinShare = 0.05
-	// MinAutoExponent refuses arcs flatter than this.
+	// MinAutoExponent refuses flatter arcs, but for the slowest when it has the
+	// capacitance of a contact: a blocking or diffusing contact has n down to 0.5.
 	MinAutoExponent = 0.75
+	contactLike     = 1e-8 // F
 	// Two neighbours closer than both factors are one process with a spread of
 	// time constants, not two.
 	sameTau = 5.0
@@ -65,7 +69,7 @@ func (g grid) choose(want int, h hold) (solution, []Trial, error) {
 			}
 			tr := g.trial(sol)
 			if taken >= 0 {
-				tr.Why = g.refuse(sol, trials[taken].AICc-tr.AICc)
+				tr.Why = g.refuse(sol, trials[taken], tr)
 			}
 			if i == 0 {
 				before = sol.p
@@ -106,37 +110,49 @@ const minimaTried = 3
 
 func (g grid) trial(sol solution) Trial {
 	free := sol.free()
-	return Trial{Arcs: sol.arcs, AICc: aicc(sol.sum, 2*g.count(), free), Free: free,
+	factor, _ := inflation(g.residuals(sol.p))
+	return Trial{Arcs: sol.arcs, AICc: aicc(sol.sum, 2*g.count(), free), Free: free, Inflation: factor,
 		Sigma: math.Sqrt(sol.sum / math.Max(1, float64(2*g.count()-free)))}
 }
 
-// refuse says why a solution with more arcs is not taken, "" if it is.
-func (g grid) refuse(sol solution, gain float64) string {
-	factor, _ := inflation(g.residuals(sol.p))
+// refuse says why a solution with more arcs is not taken, "" if it is. When it halves
+// the residual, or leaves white ones where the smaller model does not, the data ask
+// for it, and its arcs may be flat or small; two that are one process stay refused.
+func (g grid) refuse(sol solution, smaller, larger Trial) string {
+	gain := smaller.AICc - larger.AICc
 	switch {
 	case !(gain > MinAICcGain):
 		return fmt.Sprintf("AICc falls by %.1f, more than %.0f needed", gain, MinAICcGain)
-	case !(gain/factor > MinAICcGain):
-		return fmt.Sprintf("AICc falls by %.1f, but residuals hang together: worth %.1f, more than %.0f needed", gain, gain/factor, MinAICcGain)
+	case larger.Sigma > plainLoss*smaller.Sigma && !(gain/larger.Inflation > MinAICcGain):
+		return fmt.Sprintf("AICc falls by %.1f, but residuals hang together: worth %.1f, more than %.0f needed", gain, gain/larger.Inflation, MinAICcGain)
 	}
-	low, high := math.Exp(g.logw[len(g.logw)-1])/(2*math.Pi), math.Exp(g.logw[0])/(2*math.Pi)
+	asked := larger.Sigma < smaller.Sigma/2 || (larger.Inflation == 1 && smaller.Inflation > 1)
 	arcs := ArcsOf(sol.p)
 	for k, a := range arcs {
-		peak := a.Peak()
-		if peak < low && k == len(arcs)-1 {
-			continue // the flank of a slow process: kept so that it does not spoil its neighbours
-		}
-		at := math.Min(peak, high)
-		if share := cmplx.Abs(a.Impedance(at) / ModelOf(sol.p, at)); share < MinShare {
-			return fmt.Sprintf("arc %d is %.1f %% of |Z| at its top, %.0f %% needed", k+1, 100*share, 100*MinShare)
-		}
-		if a.N < MinAutoExponent && !sol.heldN(k) {
-			return fmt.Sprintf("arc %d has n = %.2f, %.2f needed", k+1, a.N, MinAutoExponent)
-		}
 		if k > 0 && closer(arcs[k-1], a) {
 			return fmt.Sprintf("arcs %d and %d have time constants within %.1f and capacitances within %.1f of each other: one process with a spread",
 				k, k+1, a.Tau()/arcs[k-1].Tau(), a.Capacitance()/arcs[k-1].Capacitance())
 		}
+		if why := g.unclear(sol, k, a); why != "" && !asked {
+			return why
+		}
+	}
+	return ""
+}
+
+// unclear says what keeps arc k from being seen as an arc.
+func (g grid) unclear(sol solution, k int, a Arc) string {
+	low, high := math.Exp(g.logw[len(g.logw)-1])/(2*math.Pi), math.Exp(g.logw[0])/(2*math.Pi)
+	slowest := k == sol.arcs-1
+	if slowest && a.Peak() < low {
+		return "" // the flank of a slow process: kept so that it does not spoil its neighbours
+	}
+	at := math.Min(a.Peak(), high)
+	if share := cmplx.Abs(a.Impedance(at) / ModelOf(sol.p, at)); share < MinShare {
+		return fmt.Sprintf("arc %d is %.1f %% of |Z| at its top, %.0f %% needed", k+1, 100*share, 100*MinShare)
+	}
+	if a.N < MinAutoExponent && !sol.heldN(k) && !(slowest && a.Capacitance() > contactLike) {
+		return fmt.Sprintf("arc %d has n = %.2f, %.2f needed", k+1, a.N, MinAutoExponent)
 	}
 	return ""
 }

@@ -17,6 +17,7 @@ const wideFactor = 2.0
 func (g grid) judge(fit *Fit, sol solution, h hold) {
 	t := quantile95(fit.Freedom)
 	low, high := math.Exp(g.logw[len(g.logw)-1])/(2*math.Pi), math.Exp(g.logw[0])/(2*math.Pi)
+	fit.lowest = low
 	fit.LeadR = g.lead(fit, sol, h, ParamLeadR, t)
 	fit.LeadL = g.lead(fit, sol, h, ParamLeadL, t)
 	for k, a := range ArcsOf(sol.p) {
@@ -28,6 +29,7 @@ func (g grid) judge(fit *Fit, sol solution, h hold) {
 		fa.Tau = logEstimate(fit, a.Tau(), gradient(fit, k, 1/a.N, 1/a.N, -math.Log(a.R*a.Q)/(a.N*a.N)), t)
 		fa.Peak = Estimate{Value: a.Peak(), Low: 1 / (2 * math.Pi * fa.Tau.High), High: 1 / (2 * math.Pi * fa.Tau.Low)}
 		fa.PeakInWindow = a.Peak() >= low && a.Peak() <= high
+		fa.below = a.Peak() < low
 		if _, held := h[ParamR(k)]; held {
 			fa.R.Kind = Held
 		}

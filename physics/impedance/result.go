@@ -67,17 +67,19 @@ type FittedArc struct {
 	R, Q, N         Estimate
 	C, Tau, Peak    Estimate
 	PeakInWindow    bool
+	below           bool    // top below the window
 	RelativeEpsilon float64 // C L/(A ε₀), 0 without a cell constant
 }
 
 // Trial is one row of the table of tried numbers of arcs.
 type Trial struct {
-	Arcs     int
-	AICc     float64
-	Sigma    float64 // residual standard deviation relative to |Z|, per component
-	Free     int
-	Accepted bool
-	Why      string
+	Arcs      int
+	AICc      float64
+	Sigma     float64 // residual standard deviation relative to |Z|, per component
+	Inflation float64 // of variances, 1 for white residuals
+	Free      int
+	Accepted  bool
+	Why       string
 }
 
 // Note is a remark with the figure it rests on.
@@ -110,7 +112,8 @@ type Fit struct {
 	Status      string
 	StartsAgree string
 	Notes       []Note
-	ownNotes    int // notes that do not come from the assignment of roles
+	lowest      float64 // frequency used, Hz
+	ownNotes    int     // notes that do not come from the assignment of roles
 }
 
 // Model is the fitted impedance at f in Hz.

@@ -113,3 +113,52 @@ func TestMisfitIsSaid(t *testing.T) {
 		t.Errorf("misfit said %d times, total within the interval %d times of %d", said, held, runs)
 	}
 }
+
+// randomSpecimen draws interior, boundary and contact over the range of ceramics:
+// resistances over three decades, boundary 0.1…50 times the interior, layers 0.2…10 %
+// of the grain, flat contacts, so that tops lie anywhere in the window and below it.
+func randomSpecimen(rng *rand.Rand) (arcs []Arc, leadR, noise float64) {
+	even := func(a, b float64) float64 { return a + (b-a)*rng.Float64() }
+	log := func(a, b float64) float64 { return a * math.Pow(b/a, rng.Float64()) }
+	q := func(r, c, n float64) float64 { return math.Pow(c, n) * math.Pow(r, n-1) }
+	ri, ci, ni := log(3e3, 3e6), log(4e-12, 4e-11), even(0.9, 1)
+	if rng.Float64() < 0.3 {
+		ni = 1
+	}
+	rg, cg, ng := ri*log(0.1, 50), ci/log(0.002, 0.1), even(0.85, 1)
+	rc := log(0.1, 100) * (ri + rg)
+	return []Arc{{ri, q(ri, ci, ni), ni}, {rg, q(rg, cg, ng), ng}, {rc, log(3e-7, 1e-5), even(0.6, 0.95)}}, even(1, 50), log(0.002, 0.01)
+}
+
+// With no hints: roles, number and honesty over 200 specimens. What is missed are
+// boundaries under 5 % of |Z| between two larger arcs, and tops closer than the
+// rule of choose allows; the counts allow for them.
+func TestRandomSpecimens(t *testing.T) {
+	const runs = 200
+	rng := rand.New(rand.NewPCG(21, 22))
+	complete, dishonest := 0, 0
+	for range runs {
+		arcs, leadR, noise := randomSpecimen(rng)
+		f, err := FitArcs(synthetic(params(leadR, 4e-7, arcs...), 0.1, 2e6, 61, noise, rng), Controls{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(f.Arcs) != 3 || f.Index(Interior) != 0 || f.Index(Boundary) != 1 || f.Index(Contact) != 2 {
+			continue
+		}
+		complete++
+		for k, a := range arcs {
+			e := f.Arcs[k].R
+			half := math.Log(e.High/e.Low) / 2
+			switch { // 1.5 times the half-width of 95 % is 2.9 standard deviations, a limit likewise
+			case e.Kind == Measured && math.Abs(math.Log(e.Value/a.R)) > 1.5*half,
+				e.Kind == AtLeast && a.R < e.Low/1.02, e.Kind == AtMost && a.R > e.High*1.02:
+				dishonest++
+			}
+		}
+	}
+	t.Logf("%d of %d complete with the right roles; %d of %d resistances outside their statement", complete, runs, dishonest, 3*complete)
+	if complete < runs*92/100 || dishonest > 3*complete*2/100 {
+		t.Errorf("complete %d of %d, outside %d of %d", complete, runs, dishonest, 3*complete)
+	}
+}
