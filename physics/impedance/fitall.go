@@ -41,11 +41,18 @@ func FitAll(ctx context.Context, spectra []Spectrum, controls []Controls, progre
 			progress(i+1, len(spectra))
 		}
 	}
-	assign(ptrs, each)
-	for _, role := range []Role{Interior, Boundary, Contact} {
-		offTheLine(ptrs, role)
-	}
+	Assign(ptrs, each)
 	return fits, nil
+}
+
+// Assign gives roles to the arcs of fits that belong together, one entry of
+// controls each: a role keeps its capacitance over the temperatures. It also notes
+// resistances that stand out from the other temperatures. FitAll does this itself.
+func Assign(fits []*Fit, controls []Controls) {
+	assign(fits, controls)
+	for _, role := range []Role{Interior, Boundary, Contact} {
+		offTheLine(fits, role)
+	}
 }
 
 // offLine is the factor off the common Arrhenius line that is remarked upon: a

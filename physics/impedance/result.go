@@ -151,7 +151,7 @@ func (f *Fit) Correlation(i, j int) float64 {
 
 // Draw returns a parameter vector drawn from the fit's normal distribution; normal
 // must return independent standard normal numbers. Parameters that were not free
-// keep their value; lead terms and n are cut at their range.
+// keep their value; lead terms, n and unresolved resistances are cut at their range.
 func (f *Fit) Draw(normal func() float64) []float64 {
 	out := append([]float64(nil), f.Params...)
 	var idx []int
@@ -177,8 +177,25 @@ func (f *Fit) Draw(normal func() float64) []float64 {
 	out[ParamLeadL] = math.Max(out[ParamLeadL], 0)
 	for k := range f.Arcs {
 		out[ParamN(k)] = math.Min(math.Max(out[ParamN(k)], minExponent), maxExponent)
+		if f.Free[ParamR(k)] {
+			out[ParamR(k)] = f.Arcs[k].R.cutLog(out[ParamR(k)])
+		}
 	}
 	return out
+}
+
+// cutLog keeps the logarithm of an unresolved resistance on the side of its limit
+// and within openFactor of it: the normal distribution knows neither.
+func (e Estimate) cutLog(x float64) float64 {
+	switch e.Kind {
+	case AtLeast:
+		low := math.Log(e.Low)
+		return math.Min(math.Max(x, low), low+math.Log(openFactor))
+	case AtMost:
+		high := math.Log(e.High)
+		return math.Max(math.Min(x, high), high-math.Log(openFactor))
+	}
+	return x
 }
 
 // root is the Cholesky factor of the free block, factored in units of its own

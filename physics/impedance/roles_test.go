@@ -147,6 +147,14 @@ func TestRandomSpecimens(t *testing.T) {
 			continue
 		}
 		complete++
+		for j, v := range f.Draw(rng.NormFloat64) {
+			if math.IsNaN(v) || math.IsInf(v, 0) || (j >= ParamR(0) && math.Abs(v) > 60) {
+				t.Errorf("drawn parameters %v", v)
+			}
+		}
+		if f.Covariance.At(ParamR(0), ParamR(0)) == 0 {
+			t.Errorf("no variance: %+v", f.Notes)
+		}
 		for k, a := range arcs {
 			e := f.Arcs[k].R
 			half := math.Log(e.High/e.Low) / 2
