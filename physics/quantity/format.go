@@ -36,10 +36,8 @@ func FormatNumber(x float64, digits int) string {
 	return strings.Replace(text, "-", "−", 1)
 }
 
-// FormatDecimals prints x with a fixed number of decimals and a real minus sign.
-func FormatDecimals(x float64, decimals int) string {
-	return strings.Replace(strconv.FormatFloat(x, 'f', decimals, 64), "-", "−", 1)
-}
+// FormatPlain prints all digits of x the way they are typed: 573.15, -0.72, 2.5e28.
+func FormatPlain(x float64) string { return strconv.FormatFloat(x, 'g', -1, 64) }
 
 // PrettyUnit writes a unit typed as "S/m" or "m-3" with superscripts: "m⁻³".
 func PrettyUnit(unit string) string {

@@ -74,7 +74,7 @@ func (r *run) findWidths() string {
 		return ""
 	}
 	roads := fmt.Sprintf("%s from the barrier (2λ_eff) and %s from the capacitance", small.Text(), width.Text())
-	if math.Abs(float64(gap.Value)) <= arcAllowance || (gap.HasInterval() && gap.Low <= 0 && gap.High >= 0) {
+	if r.result.WidthsAgree(r.result.View.Spectrum) {
 		return fmt.Sprintf("The two roads to the width agree, %s: what a charged boundary with these carriers shows.", roads)
 	}
 	share := r.atView("carriers_closing_share")
@@ -199,4 +199,11 @@ func withInterval(n Number) string {
 		return n.Text()
 	}
 	return n.Text() + " (95 %: " + interval + ")"
+}
+
+// WidthsAgree reports whether the two roads to the width of a spectrum (0 the
+// first) agree: within their interval, or within what an arc's capacitance is good for.
+func (r *Result) WidthsAgree(spectrum int) bool {
+	gap := r.Number("width_gap", spectrum+1)
+	return gap != nil && !gap.Missing() && (math.Abs(float64(gap.Value)) <= arcAllowance || (gap.HasInterval() && gap.Low <= 0 && gap.High >= 0))
 }

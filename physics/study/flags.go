@@ -124,7 +124,7 @@ func (r *run) flagSpectrum(e Evidence) {
 func (r *run) flagRow(i int) {
 	row := &r.rows[i]
 	v := &row.v
-	if gap := v[cGap]; math.Abs(gap) > arcAllowance && !r.spans("width_gap", i+1, 0) {
+	if gap := v[cGap]; !math.IsNaN(gap) && !r.result.WidthsAgree(i) {
 		r.raise(Flag{ID: "widths", Station: "boundary",
 			Text: fmt.Sprintf("The two roads to the width disagree: %s from the barrier, %s from the capacitance. Carriers of %s of the nominal %s would close them.",
 				q.Format(v[cWidthSmall], q.Length, 3), q.Format(v[cWidth], q.Length, 3), percent(v[cClosingShare]), q.Format(r.specimen.carrierDensity(), q.NumberDensity, 3)),
@@ -145,12 +145,6 @@ func (r *run) flagRow(i int) {
 			Text:  fmt.Sprintf("The core would hold %s carriers per site: more core sites, or another charge.", q.FormatNumber(v[cOccupancy], 3)),
 			Value: Float(v[cOccupancy]), Limit: 1}, row.T)
 	}
-}
-
-// spans reports whether the 95 % interval of a spectrum's number holds x.
-func (r *run) spans(id string, spectrum int, x float64) bool {
-	n := r.result.Number(id, spectrum)
-	return n != nil && n.HasInterval() && float64(n.Low) <= x && x <= float64(n.High)
 }
 
 // flagLayer judges the layer that is shown.

@@ -130,15 +130,7 @@ func (n Number) Text() string {
 	return value + " " + unit
 }
 
-// Text prints what was put into an equation.
-func (p Put) Text() string {
-	if p.kind == nil {
-		return p.Symbol + " = " + q.FormatNumber(float64(p.Value), 4)
-	}
-	return p.Symbol + " = " + q.Format(float64(p.Value), *p.kind, 4)
-}
-
-// put makes the list of numbers put into an equation: symbol, value, kind in turn.
+// put is one number put into an equation.
 func put(symbol string, value float64, kind q.Kind) Put {
 	return Put{Symbol: symbol, Value: Float(value), Unit: kind.SIUnit, kind: &kind}
 }

@@ -32,7 +32,8 @@ type Result struct {
 	View      View              // what the drawing and the profile show
 	Energies  Energies
 
-	rows []row
+	rows    []row
+	settled bool
 }
 
 // Energies are the Arrhenius lines behind the energies.
@@ -112,6 +113,7 @@ func (rn *Runner) Run(ctx context.Context, in Inputs, options Options) (*Result,
 		if err := r.sample(ctx); err != nil {
 			return nil, err
 		}
+		r.result.settled = true
 	}
 	r.result.rows = r.rows
 	r.raiseFlags()
@@ -240,7 +242,7 @@ func (r *Result) SetIntervals(ends []float64) error {
 	}
 	read, _ := r.Inputs.Check()
 	again := &run{Runner: &Runner{evidence: r.Evidence}, in: r.Inputs, read: read, specimen: specimenOf(r.Inputs, read), result: r, rows: r.rows}
-	r.Flags = nil
+	r.Flags, r.settled = nil, true
 	again.raiseFlags()
 	r.Findings = again.findings()
 	return nil
@@ -274,3 +276,6 @@ type Evidence struct {
 	Fit      *impedance.Fit // nil when Refused
 	Refused  string         // why there is no fit
 }
+
+// Settled reports that the intervals are there.
+func (r *Result) Settled() bool { return r.settled }

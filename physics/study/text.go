@@ -10,3 +10,6 @@ func plainError(err error) string {
 	}
 	return text
 }
+
+// Plain is an error as it is shown to a person, without the names of packages.
+func Plain(err error) string { return plainError(err) }

@@ -132,3 +132,32 @@ func ParameterTable() string {
 
 // cell escapes what would end a Markdown cell.
 func cell(text string) string { return strings.ReplaceAll(text, "|", "\\|") }
+
+// PlusText prints the ± of a field's reading in the unit of the reading.
+func PlusText(f Field, u Understood) string {
+	switch f.Kind.SIUnit {
+	case "":
+		return q.FormatNumber(u.Plus, 3)
+	case "J":
+		return q.FormatIn(u.Plus, f.Kind, "eV", 3)
+	}
+	return q.FormatNumber(u.Plus, 3) + " " + q.PrettyUnit(f.Kind.SIUnit)
+}
+
+// StationOf is the station of a parameter or of a ± parameter.
+func StationOf(param string) string {
+	for _, f := range Fields {
+		if f.Param == param || (f.PlusName != "" && f.PlusName == param) {
+			return f.Station
+		}
+	}
+	return ""
+}
+
+// ValueText prints what was put into an equation, without its symbol.
+func (p Put) ValueText() string {
+	if p.kind == nil {
+		return q.FormatNumber(float64(p.Value), 4)
+	}
+	return q.Format(float64(p.Value), *p.kind, 4)
+}

@@ -1,6 +1,10 @@
 package page
 
-import "brinkfield/wasm/browser"
+import (
+	"time"
+
+	"brinkfield/wasm/browser"
+)
 
 // Host is what the page asks of the browser. *browser.Browser is the real one;
 // native tests hand in their own. Callbacks run on the page's loop, a render follows.
@@ -28,6 +32,7 @@ type Host interface {
 	Focus(id string)
 	FocusAndSelect(id string)
 	AfterRender(func())
+	After(d time.Duration, f func()) (stop func())
 	Report(message string)
 	Licences() string
 

@@ -1,36 +1,42 @@
 package page
 
-import (
-	"github.com/vugu/vugu"
-)
+import "github.com/vugu/vugu"
 
 // Root is the whole page.
 type Root struct {
-	Host       Host
-	Text       string
-	Understood string
-	engine     interface {
-		Call(string, []byte, func(float64, string), func([]byte, error)) func()
-	}
+	App      *App
+	stations []vugu.Builder
+}
+
+// station is one link of the chain: one component here, one section of study.
+type station struct {
+	id  string
+	new func(*App) vugu.Builder
+}
+
+// stations in the order of the work. A new station is one line here.
+var stations = []station{
+	{"specimen", func(a *App) vugu.Builder { return &Specimen{App: a} }},
+	{"spectra", func(a *App) vugu.Builder { return &Spectra{App: a} }},
+	{"boundary", func(a *App) vugu.Builder { return &Boundary{App: a} }},
+	{"profile", func(a *App) vugu.Builder { return &Profile{App: a} }},
 }
 
 // NewRoot returns the page's root component.
 func NewRoot(h Host) vugu.Builder {
-	return &Root{Host: h, Text: h.Fragment(), engine: h.NewEngine()}
+	c := &Root{App: newApp(h)}
+	for _, s := range stations {
+		c.stations = append(c.stations, s.new(c.App))
+	}
+	return &framed{c}
 }
 
-// Edit takes what is typed.
-func (c *Root) Edit(e vugu.DOMEvent) {
-	c.Text = e.PropString("target", "value")
-	c.Host.ReplaceFragment(c.Text)
-}
+// framed is the root with its plots: what changed is drawn once the render is on
+// the page.
+type framed struct{ *Root }
 
-// Ask sends the text as the name of a task.
-func (c *Root) Ask() {
-	c.engine.Call(c.Text, nil, nil, func(b []byte, err error) {
-		c.Understood = string(b)
-		if err != nil {
-			c.Understood = err.Error()
-		}
-	})
+// Build builds the page and asks for the drawings to follow.
+func (d *framed) Build(in *vugu.BuildIn) *vugu.BuildOut {
+	d.App.Host.AfterRender(d.App.draw)
+	return d.Root.Build(in)
 }

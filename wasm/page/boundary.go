@@ -1,0 +1,183 @@
+package page
+
+import (
+	"fmt"
+	"html"
+	"math"
+	"strings"
+
+	"github.com/vugu/vugu"
+
+	"brinkfield/physics/quantity"
+	"brinkfield/physics/study"
+)
+
+// Boundary is the station of the barrier: resistances, three routes, two widths.
+type Boundary struct{ App *App }
+
+// at returns a number of the spectrum shown, without a value if there is none.
+func (a *App) at(id string) study.Number {
+	if a.Result != nil && a.Spectrum() >= 0 {
+		if n := a.Result.Number(id, a.Spectrum()+1); n != nil {
+			return *n
+		}
+	}
+	return study.Number{ID: id, Label: id, Value: study.Float(math.NaN()), Low: study.Float(math.NaN()), High: study.Float(math.NaN())}
+}
+
+// The numbers of the spectrum shown, in the order of the argument.
+var (
+	resistanceIDs = []string{"r_bulk", "r_excess", "c_boundary", "blocking", "sigma_bulk", "sigma_total", "sigma_boundary"}
+	barrierIDs    = []string{"phi0_full", "phi0_depletion", "phi0_short", "short_bias", "short_bias_expected"}
+	widthIDs      = []string{"width_small_signal", "width_electrical", "width_depletion", "carriers_closing", "carriers_closing_share", "epsilon_arc"}
+	coreIDs       = []string{"core_charge", "core_occupancy", "core_segregation", "side_walls"}
+)
+
+func (c *Boundary) numbers(ids []string) (list []study.Number) {
+	for _, id := range ids {
+		if n := c.App.at(id); n.Station != "" {
+			list = append(list, n)
+		}
+	}
+	return list
+}
+
+// where names the spectrum shown.
+func (c *Boundary) where() string {
+	if e := c.App.Evidence(); e != nil {
+		return study.Celsius(e.Spectrum.T)
+	}
+	return "no spectra"
+}
+
+// rows is the table of all temperatures.
+func (c *Boundary) rows() (rows []Row) {
+	r := c.App.Result
+	if r == nil {
+		return nil
+	}
+	phi := map[string]string{"full": "phi0_full", "depletion": "phi0_depletion", "short": "phi0_short"}[r.Inputs.Get("route")]
+	for i, e := range r.Evidence {
+		get := func(id string) study.Number {
+			if n := r.Number(id, i+1); n != nil {
+				return *n
+			}
+			return study.Number{Value: study.Float(math.NaN())}
+		}
+		row := Row{Cells: []Cell{rowHead(study.Celsius(e.Spectrum.T))}}
+		if i == c.App.Spectrum() {
+			row.Class = "current"
+		}
+		for _, id := range []string{"r_bulk", "r_excess", "c_boundary", "n_boundary", "ratio"} {
+			row.Cells = append(row.Cells, numberCell(get(id)))
+		}
+		p := get(phi)
+		row.Cells = append(row.Cells, numberCell(p))
+		note := p.Reason
+		if e.Refused != "" {
+			note = e.Refused
+		}
+		if p.Missing() {
+			row.Class = strings.TrimSpace(row.Class + " out")
+			row.Cells = append(row.Cells, wordy("left out: "+note))
+		} else {
+			_, interval, _ := p.Texts()
+			row.Cells = append(row.Cells, Cell{HTML: vugu.HTML(`<span class="within">` + html.EscapeString(unbroken(interval)) + `</span>`), Class: "text"})
+		}
+		rows = append(rows, row)
+	}
+	return rows
+}
+
+func numberCell(n study.Number) Cell {
+	c := cell(n.Text())
+	if n.Bound == study.AtLeast || n.Bound == study.AtMost {
+		c.HTML = `<span class="bound">` + c.HTML + `</span>`
+	}
+	return c
+}
+
+// routes compares the three routes and how far each moves with each input.
+func (c *Boundary) routes() (rows []Row) {
+	if c.App.Result == nil {
+		return nil
+	}
+	for _, route := range []struct{ key, id, name, uses string }{
+		{"short", "phi0_short", "short form", "time constants: R, C, T, z"},
+		{"depletion", "phi0_depletion", "exact depletion", "time constants: R, C, T, z"},
+		{"full", "phi0_full", "full layer", "resistance ratio, d, ε, c∞, T, z"},
+	} {
+		row := Row{Cells: []Cell{rowHead(route.name), numberCell(c.App.at(route.id)), wordy(route.uses)}}
+		if route.key == c.App.Result.Inputs.Get("route") {
+			row.Class = "current"
+		}
+		for _, m := range c.App.Result.Moves {
+			if m.Route == route.key {
+				row.Cells = append(row.Cells, cell(shift(float64(m.Shift))))
+			}
+		}
+		rows = append(rows, row)
+	}
+	return rows
+}
+
+// routeHeads names the inputs that were moved.
+func (c *Boundary) routeHeads() []Cell {
+	names := []string{"Route", "Φ₀", "|uses"}
+	if c.App.Result != nil {
+		for _, m := range c.App.Result.Moves {
+			if m.Route == "full" {
+				names = append(names, fmt.Sprintf("%s %s", m.Symbol, unbroken(m.Change)))
+			}
+		}
+	}
+	return heads(names...)
+}
+
+// shift prints a movement of the barrier in mV, 0 where the route does not use the input.
+func shift(volt float64) string {
+	switch mv := 1e3 * volt; {
+	case math.IsNaN(mv):
+		return "—"
+	case math.Abs(mv) < 0.005:
+		return "0"
+	case mv > 0:
+		return "+" + quantity.FormatNumber(mv, 2) + " mV"
+	default:
+		return quantity.FormatNumber(mv, 2) + " mV"
+	}
+}
+
+// widths says in a sentence whether the two roads to the width agree.
+func (c *Boundary) widths() (class, title string) {
+	gap := c.App.at("width_gap")
+	switch {
+	case gap.Missing():
+		return "verdict", "The widths cannot be compared here"
+	case c.App.Result.WidthsAgree(c.App.Spectrum()):
+		return "verdict pass", "The two roads agree"
+	}
+	return "verdict fail", "The two roads disagree"
+}
+
+func (c *Boundary) widthsClass() string { class, _ := c.widths(); return class }
+func (c *Boundary) widthsTitle() string { _, title := c.widths(); return title }
+
+func (c *Boundary) widthsText() string {
+	small, el := c.App.at("width_small_signal"), c.App.at("width_electrical")
+	if small.Missing() || el.Missing() {
+		return c.App.at("width_gap").Reason
+	}
+	return fmt.Sprintf("2λ_eff from the barrier is %s, δ from the capacitance %s.", withInterval(small), withInterval(el))
+}
+
+func withInterval(n study.Number) string {
+	_, interval, _ := n.Texts()
+	if interval == "" {
+		return unbroken(n.Text())
+	}
+	return unbroken(n.Text()) + " (" + unbroken(interval) + ")"
+}
+
+// energies are the numbers of all temperatures together.
+func (c *Boundary) energies() []study.Number { return c.App.numbersOf("boundary") }

@@ -1,0 +1,56 @@
+package page
+
+import (
+	"brinkfield/physics/study"
+)
+
+// Field is one input: the text, its ±, and what was understood.
+type Field struct {
+	App   *App
+	Param string
+}
+
+func (c *Field) field() study.Field { return study.FieldOf(c.Param) }
+
+func (c *Field) reason() string { return c.App.Problems.At(c.Param) }
+
+func (c *Field) class() string {
+	if c.reason() != "" {
+		return "field wrong"
+	}
+	return "field"
+}
+
+func (c *Field) invalid() string {
+	if c.reason() != "" {
+		return "true"
+	}
+	return "false"
+}
+
+// label is the name with its symbol.
+func (c *Field) label() string {
+	f := c.field()
+	if f.Symbol == "" {
+		return f.Label
+	}
+	return f.Label + ", " + f.Symbol
+}
+
+// understood is the reading in SI, with its ±.
+func (c *Field) understood() string {
+	u, ok := c.App.Read[c.Param]
+	if !ok {
+		return ""
+	}
+	text := u.Text
+	if u.Plus > 0 {
+		text += " ± " + study.PlusText(c.field(), u)
+	}
+	return text
+}
+
+func (c *Field) measured() bool {
+	s := c.field().Sort
+	return s == study.Measure || s == study.Integer
+}

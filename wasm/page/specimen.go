@@ -1,0 +1,40 @@
+package page
+
+import "brinkfield/physics/study"
+
+// Specimen is the station of what was weighed in, pressed and fired.
+type Specimen struct{ App *App }
+
+// numbersOf lists the results of a station that belong to no spectrum.
+func (a *App) numbersOf(station string) (list []study.Number) {
+	if a.Result == nil {
+		return nil
+	}
+	for _, n := range a.Result.Numbers {
+		if n.Station == station && n.Spectrum == 0 {
+			list = append(list, n)
+		}
+	}
+	return list
+}
+
+// flagsOf lists the flags of a station.
+func (a *App) flagsOf(station string) (list []string) {
+	if a.Result == nil {
+		return nil
+	}
+	for _, f := range a.Result.Flags {
+		if f.Station == station {
+			list = append(list, f.Sentence())
+		}
+	}
+	return list
+}
+
+// staleClass greys results that do not belong to what is typed.
+func (a *App) staleClass() string {
+	if a.Stale() {
+		return "results stale"
+	}
+	return "results"
+}
