@@ -5,7 +5,7 @@ import {report, fatal} from "./banner.js";
 import {startFragment, replaceFragment, onFragment} from "./fragment.js";
 import {pick, listenFiles} from "./files.js";
 import {download, copyText} from "./output.js";
-import {draw, savePlot, listenPicks} from "./drawing.js";
+import {draw, keepDrawings, savePlot, listenPicks} from "./drawing.js";
 import {theme, setTheme, onTheme} from "./theme.js";
 import {offlineState, onOffline, startOffline} from "./offline.js";
 import {nextFrame, focusSoon} from "./frames.js";
@@ -15,7 +15,7 @@ window.brinkfield = {
   hold, release, report, fatal,
   startFragment, replaceFragment, onFragment,
   pick, listenFiles, download, copyText,
-  draw, savePlot, listenPicks,
+  draw, keepDrawings, savePlot, listenPicks,
   theme, setTheme, onTheme, offlineState, onOffline,
   nextFrame, focusSoon, newWorker,
 };

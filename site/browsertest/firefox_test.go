@@ -182,7 +182,7 @@ func TestFirefox(t *testing.T) {
 		f.eval(`document.getElementById("panic").click()`)
 		f.wait(`document.getElementById("banner").textContent.includes("in a handler")`)
 		f.eval(`document.getElementById("draw").click()`)
-		f.wait(`document.querySelector("#plot svg")`)
+		f.wait(`document.querySelector("#plot .plot-chart svg")`)
 		f.eval(`document.getElementById("crash").click()`)
 		f.wait(`document.getElementById("heard").textContent.includes("panic: in a goroutine")`)
 		f.eval(`document.getElementById("call").click()`)

@@ -127,10 +127,22 @@ func TestTheme(t *testing.T) {
 }
 
 func TestPlots(t *testing.T) {
-	b := open(t, options{kind: single, faulty: true})
+	b := open(t, options{kind: single, faulty: true, script: `HTMLAnchorElement.prototype.click = function () { window.saved = [this.download]; };`})
 	b.click("#draw")
 	b.wait(`document.querySelector("#plot svg")`)
-	eval[any](b, `document.querySelector("#plot").dispatchEvent(new CustomEvent("plotpick", {detail: {series: "a", index: 2, x: 0.5, y: 1, shift: true}}))`)
+	eval[any](b, `void (window.before = document.querySelector("#plot svg"))`)
+	for _, count := range []string{"1", "2"} { // vugu empties the element at each render
+		b.click("#up")
+		b.waitText("#count", count)
+	}
+	if !eval[bool](b, `window.before === document.querySelector("#plot .plot-chart svg")`) {
+		t.Error("the drawing did not stay through a render that did not concern it")
+	}
+	for _, format := range []string{"svg", "png"} {
+		eval[any](b, `brinkfield.savePlot("plot", "`+format+`", "x.`+format+`")`)
+		b.wait(`window.saved?.[0] === "x.` + format + `"`)
+	}
+	eval[any](b, `document.querySelector("#plot > div").dispatchEvent(new CustomEvent("plotpick", {detail: {series: "a", index: 2, x: 0.5, y: 1, shift: true}}))`)
 	b.waitText("#heard", "pick plot a 2 0.5 true")
 	b.quiet() // also: no style the policy refuses
 }

@@ -175,9 +175,10 @@ func (b *Browser) FocusAndSelect(id string) {
 // Report shows a mistake of the program in the banner; the page goes on.
 func (b *Browser) Report(message string) { glue().Call("report", message) }
 
-// DrawPlot draws a plot in the element of that id, after the next render. The
-// element must have no children of its own in the markup. Only the last drawing
-// for an id before the render counts.
+// DrawPlot draws a plot in the element of that id, after the next render, or after
+// the one that brings the element. The element must have no children of its own in
+// the markup. Only the last drawing for an id before the render counts. The drawing
+// stays through later renders; call again only when it changes.
 func (b *Browser) DrawPlot(id, kind string, specJSON []byte) {
 	b.plots[id] = plot{kind, arrayOf(specJSON)}
 }
@@ -206,10 +207,12 @@ func (b *Browser) AfterRender(f func()) { b.rendered = append(b.rendered, f) }
 
 // Rendered is called by the page's loop after each render.
 func (b *Browser) Rendered() {
+	glue().Call("keepDrawings")
 	for id, p := range b.plots {
-		glue().Call("draw", id, p.kind, p.spec)
+		if glue().Call("draw", id, p.kind, p.spec).Bool() {
+			delete(b.plots, id)
+		}
 	}
-	clear(b.plots)
 	queue := b.rendered
 	b.rendered = nil
 	for _, f := range queue {
