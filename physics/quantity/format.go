@@ -36,6 +36,20 @@ func FormatNumber(x float64, digits int) string {
 	return strings.Replace(text, "-", "−", 1)
 }
 
+// FormatShort prints x like FormatNumber with at most six digits and no zeros
+// that say nothing: 30, 0.0012, 2.5×10²⁸.
+func FormatShort(x float64) string {
+	text := FormatNumber(x, 6)
+	mantissa, power, scaled := strings.Cut(text, "×")
+	if strings.Contains(mantissa, ".") {
+		mantissa = strings.TrimRight(strings.TrimRight(mantissa, "0"), ".")
+	}
+	if scaled {
+		return mantissa + "×" + power
+	}
+	return mantissa
+}
+
 // FormatPlain prints all digits of x the way they are typed: 573.15, -0.72, 2.5e28.
 func FormatPlain(x float64) string { return strconv.FormatFloat(x, 'g', -1, 64) }
 
@@ -91,6 +105,9 @@ var steps = map[string][]string{
 
 // DisplayUnit picks the unit in which an SI value of this kind reads best.
 func DisplayUnit(si float64, kind Kind) string {
+	if kind.Shown != "" {
+		return kind.Shown
+	}
 	list, ok := steps[kind.SIUnit]
 	if !ok {
 		return kind.SIUnit
@@ -129,7 +146,7 @@ func FormatInterval(si, low, high float64, kind Kind) (value, interval, unit str
 
 // IntervalDigits says how many significant digits of v its interval low…high
 // supports: to the second digit of the half-width when that begins with 1 or 2,
-// else to the first; 2 to 5 digits.
+// else to the first; 2 to 4 digits.
 func IntervalDigits(v, low, high float64) int {
 	half := math.Abs(high-low) / 2
 	if half == 0 || v == 0 || math.IsNaN(half) || math.IsInf(half, 0) {
@@ -139,5 +156,5 @@ func IntervalDigits(v, low, high float64) int {
 	if half < 2.95*math.Pow10(place) {
 		place--
 	}
-	return min(max(int(math.Floor(math.Log10(math.Abs(v))))-place+1, 2), 5)
+	return min(max(int(math.Floor(math.Log10(math.Abs(v))))-place+1, 2), 4)
 }

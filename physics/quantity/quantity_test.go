@@ -112,6 +112,12 @@ func TestFormat(t *testing.T) {
 		{Format(-0.72*ElementaryCharge, Energy, 3), "−0.720 eV"},
 		{Format(1.18e-9, Capacitance, 3), "1.18 nF"},
 		{PrettyUnit("S/m"), "S/m"},
+		{FormatShort(30), "30"},
+		{FormatShort(1e5), "1×10⁵"},
+		{FormatShort(2.5e28), "2.5×10²⁸"},
+		{FormatShort(0.0012), "0.0012"},
+		{Format(0.0025, Fraction, 2), "0.25 %"},
+		{Format(0.0053, Millivolts, 2), "5.3 mV"},
 		{FormatNumber(math.NaN(), 3), "—"},
 	}
 	for _, tt := range tests {

@@ -200,11 +200,12 @@ func plainly(err error) error {
 
 // understood is the SI reading of a typed value, as the field shows it.
 func understood(v q.Value, kind q.Kind) string {
-	if kind.SIUnit == "" {
-		return q.FormatNumber(v.SI, 6)
+	text := q.FormatShort(v.SI)
+	if kind.SIUnit != "" {
+		text += " " + q.PrettyUnit(kind.SIUnit)
 	}
 	if kind.SIUnit == "J" {
-		return q.FormatIn(v.SI, kind, "eV", 5) + " = " + q.FormatIn(v.SI, kind, "J", 5)
+		text = q.FormatShort(q.Convert(v.SI, kind, "eV")) + " eV = " + text
 	}
-	return q.FormatIn(v.SI, kind, kind.SIUnit, 6)
+	return text
 }

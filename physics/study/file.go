@@ -39,7 +39,6 @@ const Cautions = "A screening calculation for people who know ceramics and elect
 // spectrumRecord is a spectrum in a case file, with what the fit made of it.
 type spectrumRecord struct {
 	Temperature float64      `json:"temperature_K"`
-	Source      string       `json:"source,omitempty"`
 	Points      [][3]float64 `json:"points_Hz_ohm"` // frequency, real, imaginary
 	Valid       bool         `json:"kramers_kronig_passed"`
 	Arcs        []arcRecord  `json:"arcs,omitempty"`
@@ -81,7 +80,7 @@ func (r *Result) JSON() ([]byte, error) {
 }
 
 func recordOf(e Evidence) spectrumRecord {
-	rec := spectrumRecord{Temperature: e.Spectrum.T, Source: e.Spectrum.Source, Valid: e.Validity.Pass, Refused: e.Refused}
+	rec := spectrumRecord{Temperature: e.Spectrum.T, Valid: e.Validity.Pass, Refused: e.Refused}
 	for _, p := range e.Spectrum.Points {
 		rec.Points = append(rec.Points, [3]float64{p.F, real(p.Z), imag(p.Z)})
 	}
@@ -149,7 +148,7 @@ func Open(data []byte) (Inputs, error) {
 func spectraOf(records []spectrumRecord) ([]impedance.Spectrum, error) {
 	var list []impedance.Spectrum
 	for i, rec := range records {
-		s := impedance.Spectrum{T: rec.Temperature, Source: rec.Source}
+		s := impedance.Spectrum{T: rec.Temperature}
 		if !(rec.Temperature > 0) || math.IsInf(rec.Temperature, 0) {
 			return nil, fmt.Errorf("study: spectrum %d of the case file has no usable temperature (%g K), expected above 0 K", i+1, rec.Temperature)
 		}

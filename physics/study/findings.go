@@ -1,8 +1,10 @@
 package study
 
 import (
+	"cmp"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	q "brinkfield/physics/quantity"
@@ -118,19 +120,24 @@ func (r *run) atViewValue(id string) float64 {
 	return math.NaN()
 }
 
-// findMoves names the input of the chosen route that moves the barrier most.
+// findMoves says what would change the answer: the inputs of the chosen route,
+// the one that moves the barrier most first.
 func (r *run) findMoves() string {
-	var most *Move
-	for i, m := range r.result.Moves {
-		if m.Route == r.in.Get("route") && !math.IsNaN(float64(m.Shift)) && (most == nil || math.Abs(float64(m.Shift)) > math.Abs(float64(most.Shift))) {
-			most = &r.result.Moves[i]
+	var used []Move
+	for _, m := range r.result.Moves {
+		if m.Route == r.in.Get("route") && m.Symbol != "T" && math.Abs(float64(m.Shift)) > 1e-4 {
+			used = append(used, m)
 		}
 	}
-	if most == nil {
+	if len(used) == 0 {
 		return ""
 	}
-	text := fmt.Sprintf("What moves Φ₀ most: %s, %s mV for %s", strings.ToLower(most.Input[:1])+most.Input[1:], signed(q.FormatNumber(1e3*float64(most.Shift), 2)), most.Change)
-	return text + "; the dopant is taken as frozen and flat."
+	slices.SortStableFunc(used, func(a, b Move) int { return cmp.Compare(math.Abs(float64(b.Shift)), math.Abs(float64(a.Shift))) })
+	var list []string
+	for _, m := range used[:min(4, len(used))] {
+		list = append(list, fmt.Sprintf("%s %s mV", strings.ToLower(m.Input[:1])+m.Input[1:], signed(q.FormatNumber(1e3*float64(m.Shift), 2))))
+	}
+	return "What would change Φ₀, for 10 % more of each: " + strings.Join(list, ", ") + ". The dopant is taken as frozen and flat."
 }
 
 // findLeftOut lists the temperatures without a barrier, with the reason.

@@ -70,14 +70,21 @@ func (in Inputs) WithoutControls() Inputs {
 
 // WithSpectra returns a copy that holds these spectra as own data.
 func (in Inputs) WithSpectra(spectra []impedance.Spectrum) (Inputs, error) {
-	data, err := pack(spectra)
+	own := make([]impedance.Spectrum, len(spectra))
+	for i, s := range spectra { // what a link does not carry is left behind: file names and lines
+		own[i] = impedance.Spectrum{T: s.T, Points: make([]impedance.Point, len(s.Points))}
+		for k, p := range s.Points {
+			own[i].Points[k] = impedance.Point{F: p.F, Z: p.Z}
+		}
+	}
+	data, err := pack(own)
 	if err != nil {
 		return in, err
 	}
 	out := in.Clone()
 	out.set("spectra", "data")
 	out.set("data", data)
-	out.Own = spectra
+	out.Own = own
 	return out, nil
 }
 

@@ -154,5 +154,12 @@ func unpack(data string) ([]impedance.Spectrum, error) {
 	if err != nil {
 		return nil, fmt.Errorf("measured data are not readable: %w", err)
 	}
+	for i := range reading.Spectra {
+		s := &reading.Spectra[i]
+		s.Source = ""
+		for k := range s.Points {
+			s.Points[k].Line = 0
+		}
+	}
 	return reading.Spectra, nil
 }

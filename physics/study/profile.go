@@ -128,7 +128,7 @@ func (r *run) fillView(m *spacecharge.Medium, layer *spacecharge.Layer) {
 	for _, sp := range m.Species {
 		name := sp.Name
 		if !sp.Mobile {
-			name = "dopant, frozen"
+			name = "dopant"
 		}
 		view.Carriers = append(view.Carriers, Band{name, sp.Charge, sp.Bulk, sp.Mobile})
 	}

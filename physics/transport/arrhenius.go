@@ -4,7 +4,7 @@ import (
 	"fmt"
 	"math"
 
-	"gonum.org/v1/gonum/mat"
+	"gonum.org/v1/gonum/stat"
 	"gonum.org/v1/gonum/stat/distuv"
 
 	q "brinkfield/physics/quantity"
@@ -32,28 +32,21 @@ func FitArrhenius(kelvin, sigma []float64) (Arrhenius, error) {
 	if n < 3 {
 		return Arrhenius{}, fmt.Errorf("transport: too few temperatures for an energy (%d), expected 3 or more", n)
 	}
-	x, y := mat.NewDense(n, 2, nil), mat.NewVecDense(n, nil)
+	x, y := make([]float64, n), make([]float64, n)
 	for i := range n {
-		x.Set(i, 0, 1)
-		x.Set(i, 1, -1/(q.Boltzmann*kelvin[i])*1e-20) // keeps both columns of order one
-		y.SetVec(i, math.Log(sigma[i]*kelvin[i]))
+		x[i], y[i] = -1/(q.Boltzmann*kelvin[i]), math.Log(sigma[i]*kelvin[i])
 	}
-	var line mat.VecDense
-	if err := line.SolveVec(x, y); err != nil {
-		return Arrhenius{}, fmt.Errorf("transport: no line through these temperatures: %w", err)
+	spread := stat.Variance(x, nil) * float64(n-1)
+	if !(spread > 1e-12*x[0]*x[0]) {
+		return Arrhenius{}, fmt.Errorf("transport: temperatures do not differ enough for an energy (%.6g to %.6g K), expected some kelvin between them", kelvin[0], kelvin[n-1])
 	}
-	var rest mat.VecDense
-	rest.MulVec(x, &line)
-	rest.SubVec(y, &rest)
-	variance := mat.Dot(&rest, &rest) / float64(n-2)
-	var normal, inverse mat.Dense
-	normal.Mul(x.T(), x)
-	if err := inverse.Inverse(&normal); err != nil {
-		return Arrhenius{}, fmt.Errorf("transport: temperatures do not differ enough for an energy: %w", err)
+	factor, e := stat.LinearRegression(x, y, nil, false)
+	variance := 0.0
+	for i := range n {
+		variance += math.Pow(y[i]-factor-e*x[i], 2) / float64(n-2)
 	}
 	t := distuv.StudentsT{Mu: 0, Sigma: 1, Nu: float64(n - 2)}.Quantile(0.975)
-	half := t * math.Sqrt(variance*inverse.At(1, 1)) * 1e-20
-	e := line.AtVec(1) * 1e-20
-	return Arrhenius{Energy: e, EnergyLow: e - half, EnergyTop: e + half, LogFactor: line.AtVec(0),
+	half := t * math.Sqrt(variance/spread)
+	return Arrhenius{Energy: e, EnergyLow: e - half, EnergyTop: e + half, LogFactor: factor,
 		Scatter: math.Sqrt(variance), Points: n}, nil
 }

@@ -27,12 +27,11 @@ func startWorker(receive func(message)) (l link, err error) {
 		}
 	}()
 	w := glue().Call("newWorker")
-	w.Set("onmessage", js.FuncOf(func(_ js.Value, args []js.Value) any {
+	glue().Call("listen", w, js.FuncOf(func(_ js.Value, args []js.Value) any {
 		m := decode(args[0].Get("data"))
 		go receive(m)
 		return nil
-	}))
-	w.Set("onerror", js.FuncOf(func(_ js.Value, args []js.Value) any {
+	}), js.FuncOf(func(_ js.Value, args []js.Value) any {
 		args[0].Call("preventDefault")
 		m := message{kind: "exit", text: text(args[0].Get("message"))}
 		go receive(m)

@@ -25,13 +25,17 @@ func (a *App) at(id string) study.Number {
 	return study.Number{ID: id, Label: id, Value: study.Float(math.NaN()), Low: study.Float(math.NaN()), High: study.Float(math.NaN())}
 }
 
-// The numbers of the spectrum shown, in the order of the argument.
-var (
-	resistanceIDs = []string{"r_bulk", "r_excess", "c_boundary", "blocking", "sigma_bulk", "sigma_total", "sigma_boundary"}
-	barrierIDs    = []string{"phi0_full", "phi0_depletion", "phi0_short", "short_bias", "short_bias_expected"}
-	widthIDs      = []string{"width_small_signal", "width_electrical", "width_depletion", "carriers_closing", "carriers_closing_share", "epsilon_arc"}
-	coreIDs       = []string{"core_charge", "core_occupancy", "core_segregation", "side_walls"}
-)
+// boundaryGroups are the numbers of the spectrum shown, by what they speak of.
+var boundaryGroups = []struct {
+	head string
+	ids  []string
+}{
+	{"", []string{"phi0_full", "phi0_depletion", "phi0_short", "short_bias", "short_bias_expected"}},
+	{"Resistances", []string{"r_bulk", "r_excess", "c_boundary", "blocking", "sigma_bulk", "sigma_total", "sigma_boundary", "side_walls"}},
+	{"Core", []string{"core_charge", "core_occupancy", "core_segregation"}},
+}
+
+var widthIDs = []string{"width_small_signal", "width_electrical", "width_depletion", "carriers_closing", "carriers_closing_share", "epsilon_arc"}
 
 func (c *Boundary) numbers(ids []string) (list []study.Number) {
 	for _, id := range ids {
@@ -71,22 +75,22 @@ func (c *Boundary) rows() (rows []Row) {
 		for _, id := range []string{"r_bulk", "r_excess", "c_boundary", "n_boundary", "ratio"} {
 			row.Cells = append(row.Cells, numberCell(get(id)))
 		}
-		p := get(phi)
-		row.Cells = append(row.Cells, numberCell(p))
-		note := p.Reason
-		if e.Refused != "" {
-			note = e.Refused
-		}
-		if p.Missing() {
+		row.Cells = append(row.Cells, barrierCell(get(phi), e.Refused))
+		if get(phi).Missing() {
 			row.Class = strings.TrimSpace(row.Class + " out")
-			row.Cells = append(row.Cells, wordy("left out: "+note))
-		} else {
-			_, interval, _ := p.Texts()
-			row.Cells = append(row.Cells, Cell{HTML: vugu.HTML(`<span class="within">` + html.EscapeString(unbroken(interval)) + `</span>`), Class: "text"})
 		}
 		rows = append(rows, row)
 	}
 	return rows
+}
+
+// barrierCell is the barrier with its interval, or why it is left out.
+func barrierCell(n study.Number, refused string) Cell {
+	if n.Missing() {
+		return wordy("left out: " + refused + n.Reason)
+	}
+	_, interval, _ := n.Texts()
+	return Cell{Class: "text", HTML: vugu.HTML(html.EscapeString(unbroken(n.Text())) + ` <span class="within">` + html.EscapeString(unbroken(interval)) + `</span>`)}
 }
 
 func numberCell(n study.Number) Cell {
@@ -97,41 +101,34 @@ func numberCell(n study.Number) Cell {
 	return c
 }
 
-// routes compares the three routes and how far each moves with each input.
-func (c *Boundary) routes() (rows []Row) {
-	if c.App.Result == nil {
-		return nil
-	}
-	for _, route := range []struct{ key, id, name, uses string }{
-		{"short", "phi0_short", "short form", "time constants: R, C, T, z"},
-		{"depletion", "phi0_depletion", "exact depletion", "time constants: R, C, T, z"},
-		{"full", "phi0_full", "full layer", "resistance ratio, d, ε, c∞, T, z"},
-	} {
-		row := Row{Cells: []Cell{rowHead(route.name), numberCell(c.App.at(route.id)), wordy(route.uses)}}
-		if route.key == c.App.Result.Inputs.Get("route") {
-			row.Class = "current"
-		}
-		for _, m := range c.App.Result.Moves {
-			if m.Route == route.key {
-				row.Cells = append(row.Cells, cell(shift(float64(m.Shift))))
-			}
-		}
-		rows = append(rows, row)
-	}
-	return rows
+// routeList are the three routes, with what each uses.
+var routeList = []struct{ key, id, name, uses string }{
+	{"short", "phi0_short", "short form", "R, C, T, z"},
+	{"depletion", "phi0_depletion", "exact depletion", "R, C, T, z"},
+	{"full", "phi0_full", "full layer", "R ratio, d, ε_r, c∞, T, z"},
 }
 
-// routeHeads names the inputs that were moved.
-func (c *Boundary) routeHeads() []Cell {
-	names := []string{"Route", "Φ₀", "|uses"}
-	if c.App.Result != nil {
-		for _, m := range c.App.Result.Moves {
-			if m.Route == "full" {
-				names = append(names, fmt.Sprintf("%s %s", m.Symbol, unbroken(m.Change)))
-			}
-		}
+// routes compares the three routes: barrier, what it uses, and how far it moves
+// when one input does.
+func (c *Boundary) routes() (rows []Row) {
+	if c.App.Result == nil || len(c.App.Result.Moves) == 0 {
+		return nil
 	}
-	return heads(names...)
+	value, uses := Row{Class: "current", Cells: []Cell{rowHead("Φ₀")}}, Row{Cells: []Cell{rowHead("uses")}}
+	for _, r := range routeList {
+		value.Cells = append(value.Cells, numberCell(c.App.at(r.id)))
+		uses.Cells = append(uses.Cells, Cell{HTML: pretty(r.uses)})
+	}
+	rows = []Row{value, uses}
+	for _, m := range c.App.Result.Moves {
+		if m.Route != "short" { // the first route opens a row
+			last := &rows[len(rows)-1]
+			last.Cells = append(last.Cells, cell(shift(float64(m.Shift))))
+			continue
+		}
+		rows = append(rows, Row{Cells: []Cell{{HTML: pretty(m.Input + ", " + m.Symbol + " " + unbroken(m.Change)), Head: true}, cell(shift(float64(m.Shift)))}})
+	}
+	return rows
 }
 
 // shift prints a movement of the barrier in mV, 0 where the route does not use the input.
@@ -178,6 +175,3 @@ func withInterval(n study.Number) string {
 	}
 	return unbroken(n.Text()) + " (" + unbroken(interval) + ")"
 }
-
-// energies are the numbers of all temperatures together.
-func (c *Boundary) energies() []study.Number { return c.App.numbersOf("boundary") }

@@ -59,156 +59,73 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
 			{
-				vgcompKey := vugu.MakeCompKey(0xA1D5DBD6BCCFB198^vgin.CurrentPositionHash(), vgiterkey)
+				vgcompKey := vugu.MakeCompKey(0xDAE0E9A3B7065949^vgin.CurrentPositionHash(), vgiterkey)
 				// ask BuildEnv for prior instance of this specific component
-				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Choice)
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Fields)
 				if vgcomp == nil {
 					// create new one if needed
-					vgcomp = new(Choice)
+					vgcomp = new(Fields)
 					vgin.BuildEnv.WireComponent(vgcomp)
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.App = c.App
-				vgcomp.Param = "route"
+				vgcomp.Params = []string{"route"}
 				vgout.Components = append(vgout.Components, vgcomp)
 				vgn = &vugu.VGNode{Component: vgcomp}
 				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "numbers"}}}
-			vgparent.AppendChild(vgn)
-			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+			for vgiterkeyt, g := range boundaryGroups {
+				var vgiterkey interface{} = vgiterkeyt
+				_ = vgiterkey
+				g := g
+				_ = g
+				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "slot"}}}
 				vgparent.AppendChild(vgn)
-				for vgiterkeyt, n := range c.numbers(barrierIDs) {
-					var vgiterkey interface{} = vgiterkeyt
-					_ = vgiterkey
-					n := n
-					_ = n
+				{
+					vgparent := vgn
+					_ = vgparent
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+					vgparent.AppendChild(vgn)
 					{
-						vgcompKey := vugu.MakeCompKey(0xB41D258C39FABA7F^vgin.CurrentPositionHash(), vgiterkey)
+						vgcompKey := vugu.MakeCompKey(0xDE6CE0EB3BE3E074^vgin.CurrentPositionHash(), vgiterkey)
 						// ask BuildEnv for prior instance of this specific component
-						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*NumberRow)
+						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Numbers)
 						if vgcomp == nil {
 							// create new one if needed
-							vgcomp = new(NumberRow)
+							vgcomp = new(Numbers)
 							vgin.BuildEnv.WireComponent(vgcomp)
 						}
 						vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 						vgcomp.App = c.App
-						vgcomp.N = n
+						vgcomp.Head = g.head
+						vgcomp.List = c.numbers(g.ids)
 						vgout.Components = append(vgout.Components, vgcomp)
 						vgn = &vugu.VGNode{Component: vgcomp}
 						vgparent.AppendChild(vgn)
 					}
-				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-				vgparent.AppendChild(vgn)
-			}
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
-			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "group"}}}
-			vgparent.AppendChild(vgn)
-			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "h3", Attr: []vugu.VGAttribute(nil)}
-				vgparent.AppendChild(vgn)
-				vgn.SetInnerHTML(vugu.HTML("Resistances"))
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "numbers"}}}
-				vgparent.AppendChild(vgn)
-				{
-					vgparent := vgn
-					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-					vgparent.AppendChild(vgn)
-					for vgiterkeyt, n := range c.numbers(resistanceIDs) {
-						var vgiterkey interface{} = vgiterkeyt
-						_ = vgiterkey
-						n := n
-						_ = n
-						{
-							vgcompKey := vugu.MakeCompKey(0x564DF48A97AC4538^vgin.CurrentPositionHash(), vgiterkey)
-							// ask BuildEnv for prior instance of this specific component
-							vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*NumberRow)
-							if vgcomp == nil {
-								// create new one if needed
-								vgcomp = new(NumberRow)
-								vgin.BuildEnv.WireComponent(vgcomp)
-							}
-							vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-							vgcomp.App = c.App
-							vgcomp.N = n
-							vgout.Components = append(vgout.Components, vgcomp)
-							vgn = &vugu.VGNode{Component: vgcomp}
-							vgparent.AppendChild(vgn)
-						}
-					}
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 					vgparent.AppendChild(vgn)
 				}
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "group"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "h3", Attr: []vugu.VGAttribute(nil)}
-				vgparent.AppendChild(vgn)
-				vgn.SetInnerHTML(vugu.HTML("Core"))
-				{
-					vgcompKey := vugu.MakeCompKey(0xA1E6E3A66A2A1AE9^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Field)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Field)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.Param = "core_sites"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
+				vgcompKey := vugu.MakeCompKey(0xDB6D2040B633F897^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Fields)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(Fields)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "numbers"}}}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.App = c.App
+				vgcomp.Params = []string{"core_sites"}
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
 				vgparent.AppendChild(vgn)
-				{
-					vgparent := vgn
-					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-					vgparent.AppendChild(vgn)
-					for vgiterkeyt, n := range c.numbers(coreIDs) {
-						var vgiterkey interface{} = vgiterkeyt
-						_ = vgiterkey
-						n := n
-						_ = n
-						{
-							vgcompKey := vugu.MakeCompKey(0xAB79235D10786D9E^vgin.CurrentPositionHash(), vgiterkey)
-							// ask BuildEnv for prior instance of this specific component
-							vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*NumberRow)
-							if vgcomp == nil {
-								// create new one if needed
-								vgcomp = new(NumberRow)
-								vgin.BuildEnv.WireComponent(vgcomp)
-							}
-							vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-							vgcomp.App = c.App
-							vgcomp.N = n
-							vgout.Components = append(vgout.Components, vgcomp)
-							vgn = &vugu.VGNode{Component: vgcomp}
-							vgparent.AppendChild(vgn)
-						}
-					}
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-					vgparent.AppendChild(vgn)
-				}
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}
 			vgparent.AppendChild(vgn)
@@ -223,43 +140,22 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			_ = vgparent
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "pair"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0xB7E8D8997E898A7E^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "spectrum"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
+				vgcompKey := vugu.MakeCompKey(0x67E94928FF1D1A50^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawings)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(Drawings)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				{
-					vgcompKey := vugu.MakeCompKey(0x94EB5B777129386F^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "arrhenius"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.App = c.App
+				vgcomp.Class = "pair"
+				vgcomp.IDs = []string{"spectrum", "arrhenius"}
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
+				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
@@ -274,7 +170,7 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.Caption = "All temperatures"
-				vgcomp.Head = heads("T", "R_bulk", "R_boundary", "C_gb", "n", "ratio", "Φ₀", "|95 %, or why left out")
+				vgcomp.Head = heads("T", "R_bulk", "R_boundary", "C_gb", "n", "ratio", "|Φ₀, 95 %")
 				vgcomp.ID = "temperatures"
 				vgcomp.Rows = c.rows()
 				vgcomp.Sub = "after the dielectric width is taken out"
@@ -295,7 +191,7 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.Caption = "Three routes to the barrier"
-				vgcomp.Head = c.routeHeads()
+				vgcomp.Head = heads("", "short form", "exact depletion", "full layer")
 				vgcomp.ID = "routes"
 				vgcomp.Rows = c.routes()
 				vgcomp.Sub = "at " + c.where() + ", and how far each moves with each input"
@@ -320,9 +216,9 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "h3", Attr: []vugu.VGAttribute(nil)}
 					vgparent.AppendChild(vgn)
 					vgn.SetInnerHTML(vugu.HTML("Two roads to the width"))
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "id", Val: "widths"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "plot plot-chart"}}}
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "plot plot-chart"}}}
 					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(vugu.HTML(""))
+					vgn.AddAttrInterface("id", "widths")
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n    "}
 					vgparent.AppendChild(vgn)
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "id", Val: "closure"}}}
@@ -340,36 +236,20 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					}
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n    "}
 					vgparent.AppendChild(vgn)
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "numbers"}}}
-					vgparent.AppendChild(vgn)
 					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-						vgparent.AppendChild(vgn)
-						for vgiterkeyt, n := range c.numbers(widthIDs) {
-							var vgiterkey interface{} = vgiterkeyt
-							_ = vgiterkey
-							n := n
-							_ = n
-							{
-								vgcompKey := vugu.MakeCompKey(0x1914D9F9C719966^vgin.CurrentPositionHash(), vgiterkey)
-								// ask BuildEnv for prior instance of this specific component
-								vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*NumberRow)
-								if vgcomp == nil {
-									// create new one if needed
-									vgcomp = new(NumberRow)
-									vgin.BuildEnv.WireComponent(vgcomp)
-								}
-								vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-								vgcomp.App = c.App
-								vgcomp.N = n
-								vgout.Components = append(vgout.Components, vgcomp)
-								vgn = &vugu.VGNode{Component: vgcomp}
-								vgparent.AppendChild(vgn)
-							}
+						vgcompKey := vugu.MakeCompKey(0x6EC2ECFD21972A55^vgin.CurrentPositionHash(), vgiterkey)
+						// ask BuildEnv for prior instance of this specific component
+						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Numbers)
+						if vgcomp == nil {
+							// create new one if needed
+							vgcomp = new(Numbers)
+							vgin.BuildEnv.WireComponent(vgcomp)
 						}
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+						vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+						vgcomp.App = c.App
+						vgcomp.List = c.numbers(widthIDs)
+						vgout.Components = append(vgout.Components, vgcomp)
+						vgn = &vugu.VGNode{Component: vgcomp}
 						vgparent.AppendChild(vgn)
 					}
 				}
@@ -384,7 +264,7 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					vgparent.AppendChild(vgn)
 					vgn.SetInnerHTML(vugu.HTML("Over temperature"))
 					{
-						vgcompKey := vugu.MakeCompKey(0x827D9ECC91C936C1^vgin.CurrentPositionHash(), vgiterkey)
+						vgcompKey := vugu.MakeCompKey(0xB7E8D8997E898A7E^vgin.CurrentPositionHash(), vgiterkey)
 						// ask BuildEnv for prior instance of this specific component
 						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
 						if vgcomp == nil {
@@ -401,36 +281,20 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					}
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n    "}
 					vgparent.AppendChild(vgn)
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "numbers"}}}
-					vgparent.AppendChild(vgn)
 					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-						vgparent.AppendChild(vgn)
-						for vgiterkeyt, n := range c.energies() {
-							var vgiterkey interface{} = vgiterkeyt
-							_ = vgiterkey
-							n := n
-							_ = n
-							{
-								vgcompKey := vugu.MakeCompKey(0xA72D7CDE0B397278^vgin.CurrentPositionHash(), vgiterkey)
-								// ask BuildEnv for prior instance of this specific component
-								vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*NumberRow)
-								if vgcomp == nil {
-									// create new one if needed
-									vgcomp = new(NumberRow)
-									vgin.BuildEnv.WireComponent(vgcomp)
-								}
-								vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-								vgcomp.App = c.App
-								vgcomp.N = n
-								vgout.Components = append(vgout.Components, vgcomp)
-								vgn = &vugu.VGNode{Component: vgcomp}
-								vgparent.AppendChild(vgn)
-							}
+						vgcompKey := vugu.MakeCompKey(0x58173655E8E0C60D^vgin.CurrentPositionHash(), vgiterkey)
+						// ask BuildEnv for prior instance of this specific component
+						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Numbers)
+						if vgcomp == nil {
+							// create new one if needed
+							vgcomp = new(Numbers)
+							vgin.BuildEnv.WireComponent(vgcomp)
 						}
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+						vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+						vgcomp.App = c.App
+						vgcomp.List = c.App.numbersOf("boundary")
+						vgout.Components = append(vgout.Components, vgcomp)
+						vgn = &vugu.VGNode{Component: vgcomp}
 						vgparent.AppendChild(vgn)
 					}
 				}
@@ -439,23 +303,19 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "ul", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "flags"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-				vgparent.AppendChild(vgn)
-				for vgiterkeyt, f := range c.App.flagsOf("boundary") {
-					var vgiterkey interface{} = vgiterkeyt
-					_ = vgiterkey
-					f := f
-					_ = f
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "li", Attr: []vugu.VGAttribute(nil)}
-					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(f)
+				vgcompKey := vugu.MakeCompKey(0x41772D4C481C7BA6^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*FlagList)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(FlagList)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.List = c.App.flagsOf("boundary")
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
 				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}

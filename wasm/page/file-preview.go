@@ -1,6 +1,9 @@
 package page
 
 import (
+	"fmt"
+	"strings"
+
 	"brinkfield/physics/impedance"
 	"brinkfield/physics/study"
 )
@@ -19,14 +22,36 @@ func (c *FilePreview) understood() []string {
 	return study.Understanding(c.File.Reading)
 }
 
-func (c *FilePreview) columns() []impedance.Column {
-	return c.File.Reading.Columns
+// correction is one line of what a person may correct.
+type correction struct {
+	id, label string
+	selects   []Select
 }
 
-func (c *FilePreview) signs() []string { return []string{"as understood", "as written", "turned"} }
+func (c *FilePreview) id(name string) string { return fmt.Sprintf("%s-%d", name, c.Index) }
 
-func (c *FilePreview) sign() string {
-	return map[impedance.Sign]string{impedance.SignAuto: "as understood", impedance.SignAsIs: "as written", impedance.SignFlipped: "turned"}[c.File.Options.Sign]
+func (c *FilePreview) key() string { return c.id("correct") }
+
+// corrections are the columns with what they hold and in which unit, the sign and
+// the decimal mark.
+func (c *FilePreview) corrections() (list []correction) {
+	var quantities []string
+	for _, q := range columnChoices {
+		quantities = append(quantities, q.String())
+	}
+	for _, col := range c.File.Reading.Columns {
+		name := fmt.Sprintf("column %d", col.Number)
+		id := c.id(fmt.Sprintf("column%d", col.Number))
+		list = append(list, correction{id, strings.TrimSpace(name + " " + col.Header), []Select{
+			{ID: id, Label: name, Options: quantities, Chosen: col.Quantity.String(), Pick: func(q string) { c.File.SetColumn(col.Number, q) }},
+			{ID: id + "-unit", Label: "unit of " + name, Options: unitChoices(col.Quantity), Chosen: col.Unit, Pick: func(u string) { c.File.SetUnit(col.Number, u) }}}})
+	}
+	signs := map[string]string{"": "as understood", "written": "as written", "turned": "turned round"}
+	sign := map[impedance.Sign]string{impedance.SignAsIs: "written", impedance.SignFlipped: "turned"}[c.File.Options.Sign]
+	return append(list,
+		correction{c.id("sign"), "sign of Z″ or phase", []Select{{ID: c.id("sign"), Label: "sign", Options: []string{"", "written", "turned"}, Chosen: sign, Names: signs, Pick: c.File.SetSign}}},
+		correction{c.id("decimal"), "decimal mark", []Select{{ID: c.id("decimal"), Label: "decimal mark", Options: []string{"", ".", ","}, Chosen: c.File.Options.Decimal,
+			Names: map[string]string{"": "as understood", ".": "point", ",": "comma"}, Pick: c.File.SetDecimal}}})
 }
 
 func (c *FilePreview) temperatureClass() string {

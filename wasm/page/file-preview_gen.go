@@ -82,7 +82,7 @@ func (c *FilePreview) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "details", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "correct"}}}
 		vgparent.AppendChild(vgn)
 		{
-			b, err := vjson.Marshal(c.App.Opened("correct" + c.File.Name))
+			b, err := vjson.Marshal(c.App.Opened(c.key()))
 			if err != nil {
 				panic(err)
 			}
@@ -93,9 +93,10 @@ func (c *FilePreview) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			_ = vgparent
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "summary", Attr: []vugu.VGAttribute(nil)}
 			vgparent.AppendChild(vgn)
+			vgn.AddAttrInterface("id", c.key())
 			vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
 				EventType: "click",
-				Func:      func(event vugu.DOMEvent) { event.PreventDefault(); c.App.Toggle("correct" + c.File.Name) },
+				Func:      func(event vugu.DOMEvent) { event.PreventDefault(); c.App.Toggle(c.key()) },
 				// TODO: implement capture, etc. mostly need to decide syntax
 			})
 			{
@@ -111,13 +112,13 @@ func (c *FilePreview) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			{
 				vgparent := vgn
 				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
+				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 				vgparent.AppendChild(vgn)
-				for vgiterkeyt, col := range c.columns() {
+				for vgiterkeyt, x := range c.corrections() {
 					var vgiterkey interface{} = vgiterkeyt
 					_ = vgiterkey
-					col := col
-					_ = col
+					x := x
+					_ = x
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "field row"}}}
 					vgparent.AppendChild(vgn)
 					{
@@ -125,223 +126,47 @@ func (c *FilePreview) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 						_ = vgparent
 						vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
 						vgparent.AppendChild(vgn)
-						vgn.AddAttrInterface("for", fmt.Sprintf("col%d-%d", c.Index, col.Number))
-						vgn.SetInnerHTML(fmt.Sprintf("column %d %s", col.Number, col.Header))
+						vgn.AddAttrInterface("for", x.id)
+						vgn.SetInnerHTML(x.label)
 						vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "entry"}}}
 						vgparent.AppendChild(vgn)
 						{
 							vgparent := vgn
 							_ = vgparent
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n    "}
-							vgparent.AppendChild(vgn)
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "select", Attr: []vugu.VGAttribute(nil)}
-							vgparent.AppendChild(vgn)
-							vgn.AddAttrInterface("id", fmt.Sprintf("col%d-%d", c.Index, col.Number))
-							vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-								EventType: "change",
-								Func:      func(event vugu.DOMEvent) { c.File.SetColumn(col.Number, event.PropString("target", "value")) },
-								// TODO: implement capture, etc. mostly need to decide syntax
-							})
-							{
-								vgparent := vgn
-								_ = vgparent
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-								vgparent.AppendChild(vgn)
-								for vgiterkeyt, q := range columnChoices {
-									var vgiterkey interface{} = vgiterkeyt
-									_ = vgiterkey
-									q := q
-									_ = q
-									vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "option", Attr: []vugu.VGAttribute(nil)}
-									vgparent.AppendChild(vgn)
-									{
-										b, err := vjson.Marshal(q == col.Quantity)
-										if err != nil {
-											panic(err)
-										}
-										vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "selected", JSONVal: vjson.RawMessage(b)})
-									}
-									{
-										b, err := vjson.Marshal(q.String())
-										if err != nil {
-											panic(err)
-										}
-										vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "value", JSONVal: vjson.RawMessage(b)})
-									}
-									vgn.SetInnerHTML(q.String())
-								}
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-								vgparent.AppendChild(vgn)
-							}
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n    "}
-							vgparent.AppendChild(vgn)
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "select", Attr: []vugu.VGAttribute(nil)}
-							vgparent.AppendChild(vgn)
-							vgn.AddAttrInterface("aria-label", fmt.Sprintf("unit of column %d", col.Number))
-							vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-								EventType: "change",
-								Func:      func(event vugu.DOMEvent) { c.File.SetUnit(col.Number, event.PropString("target", "value")) },
-								// TODO: implement capture, etc. mostly need to decide syntax
-							})
-							{
-								vgparent := vgn
-								_ = vgparent
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-								vgparent.AppendChild(vgn)
-								for vgiterkeyt, u := range unitChoices(col.Quantity) {
-									var vgiterkey interface{} = vgiterkeyt
-									_ = vgiterkey
-									u := u
-									_ = u
-									vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "option", Attr: []vugu.VGAttribute(nil)}
-									vgparent.AppendChild(vgn)
-									{
-										b, err := vjson.Marshal(u == col.Unit)
-										if err != nil {
-											panic(err)
-										}
-										vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "selected", JSONVal: vjson.RawMessage(b)})
-									}
-									{
-										b, err := vjson.Marshal(u)
-										if err != nil {
-											panic(err)
-										}
-										vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "value", JSONVal: vjson.RawMessage(b)})
-									}
-									vgn.SetInnerHTML(u)
-								}
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-								vgparent.AppendChild(vgn)
-							}
-						}
-					}
-				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
-				vgparent.AppendChild(vgn)
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "field row"}}}
-				vgparent.AppendChild(vgn)
-				{
-					vgparent := vgn
-					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
-					vgparent.AppendChild(vgn)
-					vgn.AddAttrInterface("for", fmt.Sprintf("sign%d", c.Index))
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "sign of Z″ or phase"}
-						vgparent.AppendChild(vgn)
-					}
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "entry"}}}
-					vgparent.AppendChild(vgn)
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "select", Attr: []vugu.VGAttribute(nil)}
-						vgparent.AppendChild(vgn)
-						vgn.AddAttrInterface("id", fmt.Sprintf("sign%d", c.Index))
-						vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-							EventType: "change",
-							Func:      func(event vugu.DOMEvent) { c.File.SetSign(event.PropString("target", "value")) },
-							// TODO: implement capture, etc. mostly need to decide syntax
-						})
-						{
-							vgparent := vgn
-							_ = vgparent
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 							vgparent.AppendChild(vgn)
-							for vgiterkeyt, s := range c.signs() {
+							for vgiterkeyt, s := range x.selects {
 								var vgiterkey interface{} = vgiterkeyt
 								_ = vgiterkey
 								s := s
 								_ = s
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "option", Attr: []vugu.VGAttribute(nil)}
-								vgparent.AppendChild(vgn)
 								{
-									b, err := vjson.Marshal(s == c.sign())
-									if err != nil {
-										panic(err)
+									vgcompKey := vugu.MakeCompKey(0x9E5188E8FDFBDA03^vgin.CurrentPositionHash(), vgiterkey)
+									// ask BuildEnv for prior instance of this specific component
+									vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Select)
+									if vgcomp == nil {
+										// create new one if needed
+										vgcomp = new(Select)
+										vgin.BuildEnv.WireComponent(vgcomp)
 									}
-									vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "selected", JSONVal: vjson.RawMessage(b)})
+									vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+									vgcomp.Chosen = s.Chosen
+									vgcomp.ID = s.ID
+									vgcomp.Label = s.Label
+									vgcomp.Names = s.Names
+									vgcomp.Options = s.Options
+									vgcomp.Pick = s.Pick
+									vgout.Components = append(vgout.Components, vgcomp)
+									vgn = &vugu.VGNode{Component: vgcomp}
+									vgparent.AppendChild(vgn)
 								}
-								{
-									b, err := vjson.Marshal(s)
-									if err != nil {
-										panic(err)
-									}
-									vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "value", JSONVal: vjson.RawMessage(b)})
-								}
-								vgn.SetInnerHTML(s)
 							}
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 							vgparent.AppendChild(vgn)
 						}
 					}
 				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
-				vgparent.AppendChild(vgn)
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "field row"}}}
-				vgparent.AppendChild(vgn)
-				{
-					vgparent := vgn
-					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
-					vgparent.AppendChild(vgn)
-					vgn.AddAttrInterface("for", fmt.Sprintf("decimal%d", c.Index))
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "decimal mark"}
-						vgparent.AppendChild(vgn)
-					}
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "entry"}}}
-					vgparent.AppendChild(vgn)
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "select", Attr: []vugu.VGAttribute(nil)}
-						vgparent.AppendChild(vgn)
-						vgn.AddAttrInterface("id", fmt.Sprintf("decimal%d", c.Index))
-						vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-							EventType: "change",
-							Func:      func(event vugu.DOMEvent) { c.File.SetDecimal(event.PropString("target", "value")) },
-							// TODO: implement capture, etc. mostly need to decide syntax
-						})
-						{
-							vgparent := vgn
-							_ = vgparent
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-							vgparent.AppendChild(vgn)
-							for vgiterkeyt, m := range []string{"", ".", ","} {
-								var vgiterkey interface{} = vgiterkeyt
-								_ = vgiterkey
-								m := m
-								_ = m
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "option", Attr: []vugu.VGAttribute(nil)}
-								vgparent.AppendChild(vgn)
-								{
-									b, err := vjson.Marshal(m == c.File.Options.Decimal)
-									if err != nil {
-										panic(err)
-									}
-									vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "selected", JSONVal: vjson.RawMessage(b)})
-								}
-								{
-									b, err := vjson.Marshal(m)
-									if err != nil {
-										panic(err)
-									}
-									vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "value", JSONVal: vjson.RawMessage(b)})
-								}
-								vgn.SetInnerHTML(map[string]string{"": "as understood", ".": "point", ",": "comma"}[m])
-							}
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-							vgparent.AppendChild(vgn)
-						}
-					}
-				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
+				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}
@@ -357,7 +182,7 @@ func (c *FilePreview) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			_ = vgparent
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
 			vgparent.AppendChild(vgn)
-			vgn.AddAttrInterface("for", fmt.Sprintf("temperature%d", c.Index))
+			vgn.AddAttrInterface("for", c.id("temperature"))
 			{
 				vgparent := vgn
 				_ = vgparent
@@ -371,7 +196,7 @@ func (c *FilePreview) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				_ = vgparent
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "input", Attr: []vugu.VGAttribute{{Namespace: "", Key: "placeholder", Val: "300 °C"}}}
 				vgparent.AppendChild(vgn)
-				vgn.AddAttrInterface("id", fmt.Sprintf("temperature%d", c.Index))
+				vgn.AddAttrInterface("id", c.id("temperature"))
 				{
 					b, err := vjson.Marshal(c.File.Typed)
 					if err != nil {

@@ -74,7 +74,7 @@ func (c *FindingsPane) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					_ = f
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "p", Attr: []vugu.VGAttribute(nil)}
 					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(f)
+					vgn.SetInnerHTML(pretty(f))
 				}
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 				vgparent.AppendChild(vgn)
@@ -95,7 +95,7 @@ func (c *FindingsPane) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					_ = f
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "li", Attr: []vugu.VGAttribute(nil)}
 					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(f.Sentence())
+					vgn.SetInnerHTML(pretty(f.Sentence()))
 				}
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 				vgparent.AppendChild(vgn)

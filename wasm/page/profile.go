@@ -7,8 +7,19 @@ import (
 // Profile is the station of the layer itself: potential and carriers.
 type Profile struct{ App *App }
 
-// given is the field that sets the barrier when the spectra do not.
-func (c *Profile) gives(key string) bool { return c.App.Typed.Get("barrier") == key }
+// fields are the inputs: what sets the barrier, and the field that it needs.
+func (c *Profile) fields() []string {
+	list := []string{"barrier", "at"}
+	switch c.App.Typed.Get("barrier") {
+	case "potential":
+		list = append(list, "potential")
+	case "charge":
+		list = append(list, "core_charge")
+	case "sites":
+		list = append(list, "segregation") // the sites themselves stand in Boundary
+	}
+	return append(list, "axis")
+}
 
 // missing says why there is no layer to show.
 func (c *Profile) missing() string {

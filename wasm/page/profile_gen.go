@@ -49,17 +49,17 @@ func (c *Profile) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
 			{
-				vgcompKey := vugu.MakeCompKey(0xA76C422024ADF1E8^vgin.CurrentPositionHash(), vgiterkey)
+				vgcompKey := vugu.MakeCompKey(0x3D240F656A5B6EB5^vgin.CurrentPositionHash(), vgiterkey)
 				// ask BuildEnv for prior instance of this specific component
-				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Choice)
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Fields)
 				if vgcomp == nil {
 					// create new one if needed
-					vgcomp = new(Choice)
+					vgcomp = new(Fields)
 					vgin.BuildEnv.WireComponent(vgcomp)
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.App = c.App
-				vgcomp.Param = "barrier"
+				vgcomp.Params = c.fields()
 				vgout.Components = append(vgout.Components, vgcomp)
 				vgn = &vugu.VGNode{Component: vgcomp}
 				vgparent.AppendChild(vgn)
@@ -67,164 +67,19 @@ func (c *Profile) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
 			{
-				vgcompKey := vugu.MakeCompKey(0x58FF823CD06B2378^vgin.CurrentPositionHash(), vgiterkey)
+				vgcompKey := vugu.MakeCompKey(0x7D4D8642F880F17B^vgin.CurrentPositionHash(), vgiterkey)
 				// ask BuildEnv for prior instance of this specific component
-				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Field)
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Numbers)
 				if vgcomp == nil {
 					// create new one if needed
-					vgcomp = new(Field)
+					vgcomp = new(Numbers)
 					vgin.BuildEnv.WireComponent(vgcomp)
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.App = c.App
-				vgcomp.Param = "at"
+				vgcomp.List = c.App.numbersOf("profile")
 				vgout.Components = append(vgout.Components, vgcomp)
 				vgn = &vugu.VGNode{Component: vgcomp}
-				vgparent.AppendChild(vgn)
-			}
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
-			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute(nil)}
-			vgparent.AppendChild(vgn)
-			{
-				b, err := vjson.Marshal(!c.gives("potential"))
-				if err != nil {
-					panic(err)
-				}
-				vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "hidden", JSONVal: vjson.RawMessage(b)})
-			}
-			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0xEEAFAB14AF639486^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Field)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Field)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.Param = "potential"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
-			}
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
-			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute(nil)}
-			vgparent.AppendChild(vgn)
-			{
-				b, err := vjson.Marshal(!c.gives("charge"))
-				if err != nil {
-					panic(err)
-				}
-				vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "hidden", JSONVal: vjson.RawMessage(b)})
-			}
-			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0x93E5738F876D31C6^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Field)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Field)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.Param = "core_charge"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
-			}
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
-			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute(nil)}
-			vgparent.AppendChild(vgn)
-			{
-				b, err := vjson.Marshal(!c.gives("sites"))
-				if err != nil {
-					panic(err)
-				}
-				vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "hidden", JSONVal: vjson.RawMessage(b)})
-			}
-			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0xFFA2237E86AB8252^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Field)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Field)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.Param = "segregation"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
-			}
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
-			vgparent.AppendChild(vgn)
-			{
-				vgcompKey := vugu.MakeCompKey(0x58EB87C97216A8CC^vgin.CurrentPositionHash(), vgiterkey)
-				// ask BuildEnv for prior instance of this specific component
-				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Choice)
-				if vgcomp == nil {
-					// create new one if needed
-					vgcomp = new(Choice)
-					vgin.BuildEnv.WireComponent(vgcomp)
-				}
-				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-				vgcomp.App = c.App
-				vgcomp.Param = "axis"
-				vgout.Components = append(vgout.Components, vgcomp)
-				vgn = &vugu.VGNode{Component: vgcomp}
-				vgparent.AppendChild(vgn)
-			}
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
-			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "numbers"}}}
-			vgparent.AppendChild(vgn)
-			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-				vgparent.AppendChild(vgn)
-				for vgiterkeyt, n := range c.App.numbersOf("profile") {
-					var vgiterkey interface{} = vgiterkeyt
-					_ = vgiterkey
-					n := n
-					_ = n
-					{
-						vgcompKey := vugu.MakeCompKey(0x208132B0083B128D^vgin.CurrentPositionHash(), vgiterkey)
-						// ask BuildEnv for prior instance of this specific component
-						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*NumberRow)
-						if vgcomp == nil {
-							// create new one if needed
-							vgcomp = new(NumberRow)
-							vgin.BuildEnv.WireComponent(vgcomp)
-						}
-						vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-						vgcomp.App = c.App
-						vgcomp.N = n
-						vgout.Components = append(vgout.Components, vgcomp)
-						vgn = &vugu.VGNode{Component: vgcomp}
-						vgparent.AppendChild(vgn)
-					}
-				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}
@@ -261,43 +116,22 @@ func (c *Profile) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "pair"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0xB1564836943E3188^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "potentials"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
+				vgcompKey := vugu.MakeCompKey(0x1519D460B2F551E2^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawings)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(Drawings)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				{
-					vgcompKey := vugu.MakeCompKey(0x27030643B6338BC0^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "carriers"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.App = c.App
+				vgcomp.Class = "pair small"
+				vgcomp.IDs = []string{"potentials", "carriers"}
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
+				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
@@ -322,23 +156,19 @@ func (c *Profile) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "ul", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "flags"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-				vgparent.AppendChild(vgn)
-				for vgiterkeyt, f := range c.App.flagsOf("profile") {
-					var vgiterkey interface{} = vgiterkeyt
-					_ = vgiterkey
-					f := f
-					_ = f
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "li", Attr: []vugu.VGAttribute(nil)}
-					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(f)
+				vgcompKey := vugu.MakeCompKey(0x35C3E1D1D60E0338^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*FlagList)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(FlagList)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.List = c.App.flagsOf("profile")
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
 				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}

@@ -31,12 +31,12 @@ func NewRoot(h Host) vugu.Builder {
 	return &framed{c}
 }
 
-// framed is the root with its plots: what changed is drawn once the render is on
-// the page.
+// framed is the root with its plots.
 type framed struct{ *Root }
 
-// Build builds the page and asks for the drawings to follow.
+// Build builds the page and names the drawings that follow its render.
 func (d *framed) Build(in *vugu.BuildIn) *vugu.BuildOut {
-	d.App.Host.AfterRender(d.App.draw)
-	return d.Root.Build(in)
+	out := d.Root.Build(in)
+	d.App.draw()
+	return out
 }

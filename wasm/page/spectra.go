@@ -20,7 +20,7 @@ type Spectra struct {
 	heldText string // value to hold it at
 }
 
-var arcOptions = []string{"auto", "1", "2", "3"}
+var arcOptions = []study.Option{{Key: "auto", Label: "auto"}, {Key: "1", Label: "1"}, {Key: "2", Label: "2"}, {Key: "3", Label: "3"}}
 
 var roleOptions = []string{"by capacitance", "interior", "boundary", "contact"}
 
@@ -30,6 +30,20 @@ func (c *Spectra) arcs() []impedance.FittedArc {
 		return e.Fit.Arcs
 	}
 	return nil
+}
+
+func (c *Spectra) setArcs(choice string) { c.App.SetArcs(choice, c.all) }
+
+func (c *Spectra) setHeld(name string) { c.held = name }
+
+// roles are the arcs with the role each has, or is given.
+func (c *Spectra) roles() (list []correction) {
+	for i, a := range c.arcs() {
+		id := fmt.Sprintf("role%d", i)
+		list = append(list, correction{id, c.arcName(i, a), []Select{{ID: id, Label: "role of arc", Options: roleOptions, Chosen: c.App.RoleChosen(i),
+			Pick: func(role string) { c.App.SetRole(i, role) }}}})
+	}
+	return list
 }
 
 // arcName is an arc as the assignment names it.

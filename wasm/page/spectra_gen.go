@@ -123,54 +123,24 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				}
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
 				vgparent.AppendChild(vgn)
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "fieldset", Attr: []vugu.VGAttribute(nil)}
-				vgparent.AppendChild(vgn)
 				{
-					vgparent := vgn
-					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "legend", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "dim"}}}
-					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(vugu.HTML("Number of arcs"))
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "choice"}}}
-					vgparent.AppendChild(vgn)
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-						vgparent.AppendChild(vgn)
-						for vgiterkeyt, o := range arcOptions {
-							var vgiterkey interface{} = vgiterkeyt
-							_ = vgiterkey
-							o := o
-							_ = o
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
-							vgparent.AppendChild(vgn)
-							{
-								vgparent := vgn
-								_ = vgparent
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "input", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "radio"}, vugu.VGAttribute{Namespace: "", Key: "name", Val: "arcs"}}}
-								vgparent.AppendChild(vgn)
-								vgn.AddAttrInterface("id", "arcs-"+o)
-								{
-									b, err := vjson.Marshal(o == c.App.ArcsChosen())
-									if err != nil {
-										panic(err)
-									}
-									vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "checked", JSONVal: vjson.RawMessage(b)})
-								}
-								vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-									EventType: "change",
-									Func:      func(event vugu.DOMEvent) { c.App.SetArcs(o, c.all) },
-									// TODO: implement capture, etc. mostly need to decide syntax
-								})
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "span", Attr: []vugu.VGAttribute(nil)}
-								vgparent.AppendChild(vgn)
-								vgn.SetInnerHTML(o)
-							}
-						}
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-						vgparent.AppendChild(vgn)
+					vgcompKey := vugu.MakeCompKey(0x69552639E7F9770E^vgin.CurrentPositionHash(), vgiterkey)
+					// ask BuildEnv for prior instance of this specific component
+					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Radios)
+					if vgcomp == nil {
+						// create new one if needed
+						vgcomp = new(Radios)
+						vgin.BuildEnv.WireComponent(vgcomp)
 					}
+					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+					vgcomp.Chosen = c.App.ArcsChosen()
+					vgcomp.Legend = "Number of arcs"
+					vgcomp.Name = "arcs"
+					vgcomp.Options = arcOptions
+					vgcomp.Pick = c.setArcs
+					vgout.Components = append(vgout.Components, vgcomp)
+					vgn = &vugu.VGNode{Component: vgcomp}
+					vgparent.AppendChild(vgn)
 				}
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
 				vgparent.AppendChild(vgn)
@@ -210,13 +180,11 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					_ = vgparent
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 					vgparent.AppendChild(vgn)
-					for i, a := range c.arcs() {
-						var vgiterkey interface{} = i
+					for vgiterkeyt, x := range c.roles() {
+						var vgiterkey interface{} = vgiterkeyt
 						_ = vgiterkey
-						i := i
-						_ = i
-						a := a
-						_ = a
+						x := x
+						_ = x
 						vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "field row"}}}
 						vgparent.AppendChild(vgn)
 						{
@@ -224,52 +192,42 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 							_ = vgparent
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
 							vgparent.AppendChild(vgn)
-							vgn.AddAttrInterface("for", fmt.Sprintf("role%d", i))
-							vgn.SetInnerHTML(c.arcName(i, a))
+							vgn.AddAttrInterface("for", x.id)
+							vgn.SetInnerHTML(x.label)
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "entry"}}}
 							vgparent.AppendChild(vgn)
 							{
 								vgparent := vgn
 								_ = vgparent
-								vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "select", Attr: []vugu.VGAttribute(nil)}
+								vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 								vgparent.AppendChild(vgn)
-								vgn.AddAttrInterface("id", fmt.Sprintf("role%d", i))
-								vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-									EventType: "change",
-									Func:      func(event vugu.DOMEvent) { c.App.SetRole(i, event.PropString("target", "value")) },
-									// TODO: implement capture, etc. mostly need to decide syntax
-								})
-								{
-									vgparent := vgn
-									_ = vgparent
-									vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-									vgparent.AppendChild(vgn)
-									for vgiterkeyt, o := range roleOptions {
-										var vgiterkey interface{} = vgiterkeyt
-										_ = vgiterkey
-										o := o
-										_ = o
-										vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "option", Attr: []vugu.VGAttribute(nil)}
+								for vgiterkeyt, s := range x.selects {
+									var vgiterkey interface{} = vgiterkeyt
+									_ = vgiterkey
+									s := s
+									_ = s
+									{
+										vgcompKey := vugu.MakeCompKey(0x2D7E9CC4389203C7^vgin.CurrentPositionHash(), vgiterkey)
+										// ask BuildEnv for prior instance of this specific component
+										vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Select)
+										if vgcomp == nil {
+											// create new one if needed
+											vgcomp = new(Select)
+											vgin.BuildEnv.WireComponent(vgcomp)
+										}
+										vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+										vgcomp.Chosen = s.Chosen
+										vgcomp.ID = s.ID
+										vgcomp.Label = s.Label
+										vgcomp.Options = s.Options
+										vgcomp.Pick = s.Pick
+										vgout.Components = append(vgout.Components, vgcomp)
+										vgn = &vugu.VGNode{Component: vgcomp}
 										vgparent.AppendChild(vgn)
-										{
-											b, err := vjson.Marshal(o == c.App.RoleChosen(i))
-											if err != nil {
-												panic(err)
-											}
-											vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "selected", JSONVal: vjson.RawMessage(b)})
-										}
-										{
-											b, err := vjson.Marshal(o)
-											if err != nil {
-												panic(err)
-											}
-											vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "value", JSONVal: vjson.RawMessage(b)})
-										}
-										vgn.SetInnerHTML(o)
 									}
-									vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-									vgparent.AppendChild(vgn)
 								}
+								vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+								vgparent.AppendChild(vgn)
 							}
 						}
 					}
@@ -296,42 +254,24 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				{
 					vgparent := vgn
 					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "select", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "select"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "hold-name"}, vugu.VGAttribute{Namespace: "", Key: "aria-label", Val: "Parameter to hold"}}}
-					vgparent.AppendChild(vgn)
-					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-						EventType: "change",
-						Func:      func(event vugu.DOMEvent) { c.held = event.PropString("target", "value") },
-						// TODO: implement capture, etc. mostly need to decide syntax
-					})
 					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-						vgparent.AppendChild(vgn)
-						for vgiterkeyt, o := range c.App.Holdable() {
-							var vgiterkey interface{} = vgiterkeyt
-							_ = vgiterkey
-							o := o
-							_ = o
-							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "option", Attr: []vugu.VGAttribute(nil)}
-							vgparent.AppendChild(vgn)
-							{
-								b, err := vjson.Marshal(o == c.holdName())
-								if err != nil {
-									panic(err)
-								}
-								vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "selected", JSONVal: vjson.RawMessage(b)})
-							}
-							{
-								b, err := vjson.Marshal(o)
-								if err != nil {
-									panic(err)
-								}
-								vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "value", JSONVal: vjson.RawMessage(b)})
-							}
-							vgn.SetInnerHTML(o)
+						vgcompKey := vugu.MakeCompKey(0x3D2D9E6178F6B48A^vgin.CurrentPositionHash(), vgiterkey)
+						// ask BuildEnv for prior instance of this specific component
+						vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Select)
+						if vgcomp == nil {
+							// create new one if needed
+							vgcomp = new(Select)
+							vgin.BuildEnv.WireComponent(vgcomp)
 						}
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+						vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+						vgcomp.Chosen = c.holdName()
+						vgcomp.Class = "select"
+						vgcomp.ID = "hold-name"
+						vgcomp.Label = "Parameter to hold"
+						vgcomp.Options = c.App.Holdable()
+						vgcomp.Pick = c.setHeld
+						vgout.Components = append(vgout.Components, vgcomp)
+						vgn = &vugu.VGNode{Component: vgcomp}
 						vgparent.AppendChild(vgn)
 					}
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "input", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "select"}, vugu.VGAttribute{Namespace: "", Key: "size", Val: "9"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "hold-value"}, vugu.VGAttribute{Namespace: "", Key: "aria-label", Val: "Value to hold it at, SI"}, vugu.VGAttribute{Namespace: "", Key: "placeholder", Val: "as fitted"}}}
@@ -624,43 +564,22 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "pair"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0x78D21F5F684A4B33^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "modulus"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
+				vgcompKey := vugu.MakeCompKey(0xE7F17813D7B7CC8^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawings)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(Drawings)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				{
-					vgcompKey := vugu.MakeCompKey(0x7B554F5AE1EB7411^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "phase"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.App = c.App
+				vgcomp.Class = "pair small"
+				vgcomp.IDs = []string{"modulus", "phase"}
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
+				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
@@ -685,43 +604,22 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "pair"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				{
-					vgcompKey := vugu.MakeCompKey(0x6FC4C3D424408D12^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "residuals"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
+				vgcompKey := vugu.MakeCompKey(0xACD4FC8CFFEDF0C6^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawings)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(Drawings)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				{
-					vgcompKey := vugu.MakeCompKey(0x96709934C81DF76D^vgin.CurrentPositionHash(), vgiterkey)
-					// ask BuildEnv for prior instance of this specific component
-					vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*Drawing)
-					if vgcomp == nil {
-						// create new one if needed
-						vgcomp = new(Drawing)
-						vgin.BuildEnv.WireComponent(vgcomp)
-					}
-					vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
-					vgcomp.App = c.App
-					vgcomp.ID = "kramers"
-					vgout.Components = append(vgout.Components, vgcomp)
-					vgn = &vugu.VGNode{Component: vgcomp}
-					vgparent.AppendChild(vgn)
-				}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.App = c.App
+				vgcomp.Class = "pair small"
+				vgcomp.IDs = []string{"residuals", "kramers"}
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
+				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
@@ -740,23 +638,19 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 			vgparent.AppendChild(vgn)
-			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "ul", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "flags"}}}
-			vgparent.AppendChild(vgn)
 			{
-				vgparent := vgn
-				_ = vgparent
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
-				vgparent.AppendChild(vgn)
-				for vgiterkeyt, f := range c.App.flagsOf("spectra") {
-					var vgiterkey interface{} = vgiterkeyt
-					_ = vgiterkey
-					f := f
-					_ = f
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "li", Attr: []vugu.VGAttribute(nil)}
-					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(f)
+				vgcompKey := vugu.MakeCompKey(0x831D106E9CD9DA38^vgin.CurrentPositionHash(), vgiterkey)
+				// ask BuildEnv for prior instance of this specific component
+				vgcomp, _ := vgin.BuildEnv.CachedComponent(vgcompKey).(*FlagList)
+				if vgcomp == nil {
+					// create new one if needed
+					vgcomp = new(FlagList)
+					vgin.BuildEnv.WireComponent(vgcomp)
 				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
+				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
+				vgcomp.List = c.App.flagsOf("spectra")
+				vgout.Components = append(vgout.Components, vgcomp)
+				vgn = &vugu.VGNode{Component: vgcomp}
 				vgparent.AppendChild(vgn)
 			}
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}

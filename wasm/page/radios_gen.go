@@ -10,7 +10,7 @@ import "github.com/vugu/vugu"
 import js "github.com/vugu/vugu/js"
 import "log"
 
-func (c *Choice) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
+func (c *Radios) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 
 	vgout = &vugu.BuildOut{}
 
@@ -24,7 +24,7 @@ func (c *Choice) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 		_ = vgparent
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "legend", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "dim"}}}
 		vgparent.AppendChild(vgn)
-		vgn.SetInnerHTML(c.label())
+		vgn.SetInnerHTML(c.Legend)
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "choice"}}}
 		vgparent.AppendChild(vgn)
 		{
@@ -32,7 +32,7 @@ func (c *Choice) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 			_ = vgparent
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 			vgparent.AppendChild(vgn)
-			for vgiterkeyt, o := range c.options() {
+			for vgiterkeyt, o := range c.Options {
 				var vgiterkey interface{} = vgiterkeyt
 				_ = vgiterkey
 				o := o
@@ -44,10 +44,10 @@ func (c *Choice) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					_ = vgparent
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "input", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "radio"}}}
 					vgparent.AppendChild(vgn)
-					vgn.AddAttrInterface("id", c.Param+"-"+o.Key)
-					vgn.AddAttrInterface("name", c.Param)
+					vgn.AddAttrInterface("id", c.Name+"-"+o.Key)
+					vgn.AddAttrInterface("name", c.Name)
 					{
-						b, err := vjson.Marshal(c.chosen(o.Key))
+						b, err := vjson.Marshal(o.Key == c.Chosen)
 						if err != nil {
 							panic(err)
 						}
@@ -55,7 +55,7 @@ func (c *Choice) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					}
 					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
 						EventType: "change",
-						Func:      func(event vugu.DOMEvent) { c.App.Edit(c.Param, o.Key) },
+						Func:      func(event vugu.DOMEvent) { c.Pick(o.Key) },
 						// TODO: implement capture, etc. mostly need to decide syntax
 					})
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "span", Attr: []vugu.VGAttribute(nil)}
