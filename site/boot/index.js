@@ -9,7 +9,7 @@ import {draw, keepDrawings, savePlot, listenPicks} from "./drawing.js";
 import {theme, setTheme, onTheme} from "./theme.js";
 import {offlineState, onOffline, startOffline} from "./offline.js";
 import {nextFrame, focusSoon} from "./frames.js";
-import {startProgram, newWorker} from "./program.js";
+import {startProgram, newWorker, listen} from "./program.js";
 
 window.brinkfield = {
   hold, release, report, fatal,
@@ -17,7 +17,7 @@ window.brinkfield = {
   pick, listenFiles, download, copyText,
   draw, keepDrawings, savePlot, listenPicks,
   theme, setTheme, onTheme, offlineState, onOffline,
-  nextFrame, focusSoon, newWorker,
+  nextFrame, focusSoon, newWorker, listen,
 };
 
 window.addEventListener("error", (e) => {

@@ -4,6 +4,7 @@ import {fatal} from "./banner.js";
 
 let module = null;
 let workerURL = "";
+let first = null; // a worker that starts while the page does
 
 // part returns what the page carries inside (the single file) or beside it (hosted).
 function part(id) {
@@ -48,6 +49,7 @@ export async function startProgram() {
   const worker = part("worker");
   module = await compile();
   workerURL = URL.createObjectURL(new Blob([await (await worker).text()], {type: "text/javascript"}));
+  first = newWorker();
   const words = lastWords();
   const go = new Go();
   const instance = await WebAssembly.instantiate(module, go.importObject);
@@ -56,9 +58,25 @@ export async function startProgram() {
   fatal(`The program ended and cannot go on. ${words()}`.trim());
 }
 
-// newWorker starts a worker; the compiled module is handed over, not compiled again.
-export function newWorker() {
+function launch() {
   const w = new Worker(workerURL);
   w.postMessage({module});
   return w;
+}
+
+// newWorker starts a worker; the compiled module is handed over, not compiled again.
+// What the worker says before listen is kept.
+export function newWorker() {
+  const w = first ?? launch();
+  first = null;
+  w.early ??= [];
+  w.onmessage ??= ({data}) => w.early.push(data);
+  return w;
+}
+
+export function listen(worker, onmessage, onerror) {
+  worker.onmessage = onmessage;
+  worker.onerror = onerror;
+  for (const data of worker.early) onmessage({data});
+  worker.early = [];
 }
