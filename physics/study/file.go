@@ -131,7 +131,7 @@ func Open(data []byte) (Inputs, error) {
 	in := Defaults()
 	for name, text := range f.Parameters {
 		if !known(name) || name == "data" {
-			return Inputs{}, fmt.Errorf("study: case file has an unknown parameter (%q), expected those of the table in README.md", name)
+			return Inputs{}, fmt.Errorf("study: case file has an unknown parameter (%q), expected one of %s", name, strings.Join(names(), ", "))
 		}
 		in.set(name, text)
 	}

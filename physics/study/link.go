@@ -32,7 +32,7 @@ func Parse(link string) (Inputs, Problems) {
 		case !ok:
 			problems = append(problems, Problem{name, fmt.Sprintf("parameter has no value (%q), expected name=value", pair)})
 		case !known(name):
-			problems = append(problems, Problem{name, fmt.Sprintf("parameter is not known (%q), expected one of the table in README.md", name)})
+			problems = append(problems, Problem{name, fmt.Sprintf("parameter is not known (%q), expected one of %s", name, strings.Join(names(), ", "))})
 		case err != nil:
 			problems = append(problems, Problem{name, fmt.Sprintf("text is not readable (%q), expected percent-encoding", value)})
 		default:
@@ -82,11 +82,18 @@ func parameters(link string) string {
 	return link
 }
 
-func known(name string) bool {
-	if _, ok := fieldIndex[name]; ok {
-		return true
+func names() (list []string) {
+	for _, f := range Fields {
+		list = append(list, f.Param)
+		if f.PlusName != "" {
+			list = append(list, f.PlusName)
+		}
 	}
-	return slices.ContainsFunc(Fields, func(f Field) bool { return f.PlusName != "" && f.PlusName == name })
+	return list
+}
+
+func known(name string) bool {
+	return slices.Contains(names(), name)
 }
 
 // Link writes the inputs as parameters, in the order of Fields; defaults are

@@ -54,7 +54,7 @@ func TestLinkByHand(t *testing.T) {
 	for link, part := range map[string]string{
 		"grainsize=3 nm":    "parameter is not known",
 		"grain":             "parameter has no value",
-		"data=%%%":          "measured data are damaged",
+		"data=%%%":          "text is not readable",
 		"data=AAAA":         "measured data",
 		"spectra=data":      "no spectra are given",
 		"omit=99:1":         "spectrum number is not usable",

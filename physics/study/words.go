@@ -113,19 +113,25 @@ func ParameterTable() string {
 		}
 		fmt.Fprintf(&b, "| `%s` | %s | %s | %s. %s | %s |\n", f.Param, plus, f.Station, what, cell(f.Doc), cell(f.Default))
 	}
-	b.WriteString("\n| number | symbol | unit | per spectrum | equation |\n|---|---|---|---|---|\n")
-	row := func(c column, per string) {
-		e := Equations[c.equation].Text
-		fmt.Fprintf(&b, "| `%s` %s | %s | %s | %s | %s |\n", c.id, c.label, cell(c.symbol), orDefault(q.PrettyUnit(c.kind.SIUnit), "1"), per, cell(e))
-	}
-	for _, c := range columnList {
-		row(c, "yes")
-	}
-	for _, c := range togetherList {
-		row(c, "no")
-	}
-	for _, c := range profileColumns {
-		row(c.column, "layer shown")
+	return b.String()
+}
+
+// NumberTable writes the numbers of a result as Markdown, each id once.
+func NumberTable(r *Result) string {
+	var b strings.Builder
+	b.WriteString("| number | symbol | unit | of | equation | source |\n|---|---|---|---|---|---|\n")
+	seen := map[string]bool{}
+	for _, n := range r.Numbers {
+		if seen[n.ID] {
+			continue
+		}
+		seen[n.ID] = true
+		of := n.Station
+		if n.Spectrum > 0 {
+			of = "each spectrum"
+		}
+		e := Equations[n.Equation]
+		fmt.Fprintf(&b, "| `%s` %s | %s | %s | %s | %s | %s |\n", n.ID, cell(n.Label), cell(n.Symbol), orDefault(q.PrettyUnit(n.Unit), "1"), of, cell(e.Text), cell(e.Source))
 	}
 	return b.String()
 }

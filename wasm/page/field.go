@@ -50,7 +50,10 @@ func (c *Field) understood() string {
 	return text
 }
 
-func (c *Field) measured() bool {
-	s := c.field().Sort
-	return s == study.Measure || s == study.Integer
+// drag is the field that dragging its name varies; whole numbers and words are typed.
+func (c *Field) drag() string {
+	if c.field().Sort == study.Measure {
+		return c.Param
+	}
+	return ""
 }
