@@ -80,7 +80,7 @@ answer() {
 serve() {
 	build
 	say ""
-	if [[ -d wasm/answer ]]; then answer; fi
+	answer --findings
 	say ""
 	go build -o .build/serve ./site/tools/serve
 	exec .build/serve -dir site/dist

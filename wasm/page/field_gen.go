@@ -27,7 +27,7 @@ func (c *Field) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 		vgparent.AppendChild(vgn)
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "label", Attr: []vugu.VGAttribute(nil)}
 		vgparent.AppendChild(vgn)
-		vgn.AddAttrInterface("data-drag", c.Param)
+		vgn.AddAttrInterface("data-drag", c.drag())
 		vgn.AddAttrInterface("for", c.Param)
 		vgn.AddAttrInterface("title", c.field().Doc)
 		vgn.SetInnerHTML(pretty(c.label()))
