@@ -16,7 +16,13 @@ export function startFragment() {
   return written;
 }
 
-function write() {
+// shown is how the address bar shows a text behind "#".
+function shown(text) { return new URL(`#${text}`, location.href).hash; }
+
+function write(again = true) {
+  const text = written;
+  // Chromium may drop the change without a word: look again, and write again.
+  if (again) setTimeout(() => { if (pending === null && written === text && location.hash !== shown(text)) write(false); }, 1000);
   try {
     history.replaceState(null, "", `${location.pathname}#${written}`);
   } catch {

@@ -9,6 +9,7 @@ import {draw, keepDrawings, savePlot, listenPicks} from "./drawing.js";
 import {theme, setTheme, onTheme} from "./theme.js";
 import {offlineState, onOffline, startOffline} from "./offline.js";
 import {nextFrame, focusSoon} from "./frames.js";
+import {listenKeys} from "./keys.js";
 import {listenVary} from "./vary.js";
 import {startProgram, newWorker, listen} from "./program.js";
 
@@ -28,6 +29,7 @@ window.addEventListener("error", (e) => {
 window.addEventListener("unhandledrejection", (e) => report(String(e.reason?.message ?? e.reason)));
 
 guardRenderer();
+listenKeys();
 listenVary();
 startProgram().catch((e) => fatal(`The program could not start: ${e?.message ?? e}`));
 startOffline();

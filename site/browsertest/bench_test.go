@@ -1,6 +1,7 @@
 package browsertest
 
 import (
+	"fmt"
 	"slices"
 	"testing"
 
@@ -47,6 +48,48 @@ func BenchmarkLoop(b *testing.B) {
 	}
 	b.ReportMetric(median(times), "ms-redraw")
 	b.ReportMetric(0, "ns/op")
+}
+
+// BenchmarkEdit is an edit of the demo case, from the typed text to the change on
+// the page, per station.
+func BenchmarkEdit(b *testing.B) {
+	for _, e := range []struct{ station, fragment, field, text, result string }{
+		{"specimen", "", "#grain", "%d nm", "#section"},
+		{"boundary", "", "#core_sites", "%de15 m-2", `[data-number="core_occupancy"]`},
+		{"profile", "barrier=potential", "#potential", "%d mV", "#section"},
+	} {
+		b.Run(e.station, func(b *testing.B) {
+			tab := open(b, options{kind: single, fragment: e.fragment})
+			settled(tab)
+			tab.click("#go-" + e.station)
+			tab.shownOn(e.field)
+			var times []float64
+			for i := 0; b.Loop(); i++ {
+				times = append(times, redraw(tab, e.field, fmt.Sprintf(e.text, 351+i%9), e.result))
+			}
+			b.ReportMetric(median(times), "ms-redraw")
+			b.ReportMetric(0, "ns/op")
+		})
+	}
+}
+
+// BenchmarkEngine runs the calculation in the browser's own engine: one layer with
+// all its results, and the fit of the demo's seven spectra with their test.
+func BenchmarkEngine(b *testing.B) {
+	for _, task := range []string{"solve", "fit", "intervals"} {
+		b.Run(task, func(b *testing.B) {
+			tab := open(b, options{kind: single, faulty: true})
+			var times []float64
+			for i := 0; b.Loop(); i++ {
+				tab.fill("#field", "bench/"+task)
+				tab.click("#task")
+				tab.waitText("#heard", fmt.Sprintf("bench/%s %d:", task, i+1))
+				times = append(times, eval[float64](tab, `Number(document.getElementById("heard").textContent.split(":")[1])`))
+			}
+			b.ReportMetric(median(times)*1000, "ns/op")
+			b.ReportMetric(median(times)/1000, "ms-in-engine")
+		})
+	}
 }
 
 // redraw puts value into a field (or clicks, for an empty value) and returns the

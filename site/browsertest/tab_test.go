@@ -92,9 +92,25 @@ func (b *tab) keys(selector, text string) {
 // fill replaces the text of a field, as a person does: select all, type, leave with Tab.
 func (b *tab) fill(selector, text string) {
 	b.t.Helper()
+	b.shownOn(selector)
 	b.do(chromedp.Focus(chromedp.CSS(selector)))
 	eval[any](b, "document.querySelector("+quoted(selector)+").select()")
 	b.do(chromedp.KeyEvent(text), chromedp.KeyEvent("\t"))
+}
+
+// shownOn waits until an element stands on the page for a person to see.
+func (b *tab) shownOn(selector string) {
+	b.t.Helper()
+	b.wait("document.querySelector(" + quoted(selector) + ")?.offsetParent")
+}
+
+// clear empties a field.
+func (b *tab) clear(selector string) {
+	b.t.Helper()
+	b.shownOn(selector)
+	b.do(chromedp.Focus(chromedp.CSS(selector)))
+	eval[any](b, "document.querySelector("+quoted(selector)+").select()")
+	b.do(chromedp.KeyEvent("\b"))
 }
 
 // upload clicks a control that opens the file dialogue and chooses files there.

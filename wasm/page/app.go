@@ -3,6 +3,7 @@ package page
 import (
 	"context"
 	"fmt"
+	"strconv"
 	"strings"
 	"time"
 
@@ -34,6 +35,7 @@ type App struct {
 	calc     *superseding
 	settled  []func()          // wait for the intervals
 	drawn    map[string][]byte // last drawing per element
+	keys     map[string]string // what it depended on
 	loadedOn string            // the fragment the page was opened with
 }
 
@@ -46,7 +48,7 @@ type Work struct {
 
 // newApp opens the case that the address holds, or the demo.
 func newApp(h Host) *App {
-	a := &App{Host: h, Station: "boundary", open: map[string]bool{}, drawn: map[string][]byte{}}
+	a := &App{Host: h, Station: "boundary", open: map[string]bool{}, drawn: map[string][]byte{}, keys: map[string]string{}}
 	a.calc = &superseding{engine: h.NewEngine(), after: h.After}
 	a.loadedOn = h.Fragment()
 	a.openLink(a.loadedOn)
@@ -101,11 +103,14 @@ func (a *App) show(in study.Inputs) {
 	a.Typed = in
 	a.Read, a.Problems = in.Check()
 	a.Host.ReplaceFragment(in.Link())
+	if len(a.Problems) > 0 {
+		return // the last good result stays, and its intervals may still come
+	}
+	if a.Result != nil && a.Work.What == "" && a.Result.Inputs.Link() == in.Link() {
+		return // what is shown belongs to these inputs
+	}
 	a.calc.stop()
 	a.Work = Work{}
-	if len(a.Problems) > 0 {
-		return // the last good result stays
-	}
 	if a.runner.Fitted(in) {
 		a.compute(in)
 		a.askIntervals(in)
@@ -189,13 +194,18 @@ func (w Work) Left() string {
 // Stale reports that the result does not belong to what is typed.
 func (a *App) Stale() bool { return len(a.Problems) > 0 || a.Work.What != "" }
 
+// Busy tells whether a result or its intervals are still to come, for aria-busy.
+func (a *App) Busy() string {
+	return strconv.FormatBool(a.Result == nil || a.Work.What != "" || !a.Result.Settled())
+}
+
 // whenSettled runs f when the result is complete with its intervals. It says why
 // not when there is nothing good to wait for.
 func (a *App) whenSettled(f func()) {
 	switch {
 	case len(a.Problems) > 0:
 		a.Message = "First mend the field: " + a.Problems[0].Param + ": " + a.Problems[0].Text
-	case a.Result == nil || a.Stale() || !a.Result.Settled():
+	case a.Busy() == "true":
 		a.settled = append(a.settled, f)
 	default:
 		f()
@@ -254,11 +264,16 @@ func (a *App) PickCase() {
 	a.Host.PickFiles(".json,.csv,.txt,.dat,.tsv,text/plain,application/json", true, a.takeFiles)
 }
 
+// printing is how long every station stays on the page for the print dialogue,
+// which holds the clock while it is open.
+const printing = 2 * time.Second
+
 // Print shows every station and opens the print dialogue.
 func (a *App) Print() {
 	a.whenSettled(func() {
 		a.Printing = true
 		a.Host.Print()
+		a.Host.After(printing, func() { a.Printing = false })
 	})
 }
 

@@ -35,14 +35,21 @@ func (a *App) draw() {
 			continue
 		}
 		for _, p := range list {
-			if spec := p.make(a); spec != nil {
-				a.put(p.id, "chart", encode(spec))
+			if key := a.dependsOn(station, p.id); key == "" || a.keys[p.id] != key {
+				a.keys[p.id] = key
+				a.put(p.id, "chart", encode(p.make(a)))
 			}
 		}
 	}
-	if a.Printing {
-		a.Printing = false
+}
+
+// dependsOn names what the plots of a spectrum depend on: not on the specimen, so
+// that an edit of it need not draw them anew. Empty: on everything.
+func (a *App) dependsOn(station, id string) string {
+	if station != "spectra" && id != "spectrum" {
+		return ""
 	}
+	return fmt.Sprintf("%p %d %v", a.Result.Evidence, a.Spectrum(), a.control().Omit)
 }
 
 func (a *App) put(id, kind string, spec []byte) {

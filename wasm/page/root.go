@@ -26,7 +26,7 @@ var stations = []station{
 func NewRoot(h Host) vugu.Builder {
 	c := &Root{App: newApp(h)}
 	for _, s := range stations {
-		c.stations = append(c.stations, s.new(c.App))
+		c.stations = append(c.stations, &onShow{app: c.App, id: s.id, station: s.new(c.App)})
 	}
 	return &framed{c}
 }
@@ -39,4 +39,22 @@ func (d *framed) Build(in *vugu.BuildIn) *vugu.BuildOut {
 	out := d.Root.Build(in)
 	d.App.draw()
 	return out
+}
+
+// onShow builds a station only while it is shown: an edit must not pay for what
+// nobody sees.
+type onShow struct {
+	app     *App
+	id      string
+	station vugu.Builder
+}
+
+// Build builds the station, or an empty section in its place.
+func (o *onShow) Build(in *vugu.BuildIn) *vugu.BuildOut {
+	if o.app.Shows(o.id) {
+		return o.station.Build(in)
+	}
+	section := &vugu.VGNode{Type: vugu.ElementNode, Data: "section", Attr: []vugu.VGAttribute{{Key: "class", Val: "station"}, {Key: "id", Val: o.id}}}
+	section.Prop = append(section.Prop, vugu.VGProperty{Key: "hidden", JSONVal: []byte("true")})
+	return &vugu.BuildOut{Out: []*vugu.VGNode{section}}
 }

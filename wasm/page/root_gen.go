@@ -74,6 +74,7 @@ func (c *Root) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 		vgparent.AppendChild(vgn)
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "main", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "page"}}}
 		vgparent.AppendChild(vgn)
+		vgn.AddAttrInterface("aria-busy", c.App.Busy())
 		{
 			vgparent := vgn
 			_ = vgparent
