@@ -221,6 +221,7 @@ func TestBadInput(t *testing.T) {
 		{"#epsr", "thirty", "no number found"},
 		{"#grain_pm", "3 V", "expected a 95 % half-width"},
 	} {
+		b.shownOn(tt.field)
 		former := eval[string](b, `document.querySelector(`+quoted(tt.field)+`).value`)
 		b.fill(tt.field, tt.text)
 		if tt.text == "" {
@@ -303,7 +304,7 @@ func TestKeep(t *testing.T) {
 	}
 	for _, station := range []string{"spectra", "boundary", "profile"} {
 		b.click("#go-" + station)
-		b.wait(`document.querySelector("#` + station + ` .plot svg")`)
+		b.wait(`(() => { const l = [...document.querySelectorAll("#` + station + ` .drawing")]; return l.length > 1 && l.every((d) => d.querySelector("svg")); })()`)
 		n := eval[int](b, `document.querySelectorAll("#`+station+` .drawing").length`)
 		eval[any](b, `void (window.files = {}, document.querySelectorAll("#`+station+` .drawing-tools .tool:first-child").forEach((k) => k.click()))`)
 		b.wait(fmt.Sprintf(`Object.keys(window.files).length === %d`, n))

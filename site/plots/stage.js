@@ -77,7 +77,8 @@ const sizes = typeof ResizeObserver === 'function' ? new ResizeObserver((list) =
   }
 }) : null;
 
-// draw puts a drawing into el, or replaces the one it holds.
+// draw puts a drawing into el, or replaces the one it holds. An element that leaves the page
+// and comes back keeps its drawing; the page has a fixed number of them.
 export function draw(el, kind, spec) {
   if (!Object.hasOwn(KINDS, kind)) throw new Error(`plots: unknown kind (${kind}), expected chart, section or spark`);
   const old = acts.get(el);
@@ -85,17 +86,7 @@ export function draw(el, kind, spec) {
   acts.set(el, { kind, spec, view, width: 0 });
   el.classList.add('plot', `plot-${kind}`);
   sizes?.observe(el);
-  if (!old) forget();
   show(el);
-}
-
-// forget drops elements that have left the page.
-function forget() {
-  for (const el of acts.keys()) {
-    if (el.isConnected) continue;
-    sizes?.unobserve(el);
-    acts.delete(el);
-  }
 }
 
 const all = () => { for (const el of acts.keys()) if (el.isConnected) show(el); };

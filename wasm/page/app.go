@@ -172,7 +172,12 @@ func (a *App) askIntervals(in study.Inputs) {
 
 func (a *App) begin(what string) { a.Work = Work{What: what, Began: time.Now()} }
 
-func (a *App) progress(fraction float64, what string) { a.Work.Fraction, a.Work.What = fraction, what }
+// progress takes a report; one that arrives after the end is late and says nothing.
+func (a *App) progress(fraction float64, what string) {
+	if a.Work.What != "" {
+		a.Work.Fraction, a.Work.What = fraction, what
+	}
+}
 
 // Cancel stops the calculation under way; the last good result stays.
 func (a *App) Cancel() {
@@ -180,6 +185,9 @@ func (a *App) Cancel() {
 	a.Work = Work{}
 	a.Message = "The calculation was cancelled; what is shown is the last good result. Edit a field to start again."
 }
+
+// Percent is how far the calculation is.
+func (w Work) Percent() int { return int(100 * w.Fraction) }
 
 // Left says how long the calculation will still take.
 func (w Work) Left() string {

@@ -56,5 +56,6 @@ func (o *onShow) Build(in *vugu.BuildIn) *vugu.BuildOut {
 	}
 	section := &vugu.VGNode{Type: vugu.ElementNode, Data: "section", Attr: []vugu.VGAttribute{{Key: "class", Val: "station"}, {Key: "id", Val: o.id}}}
 	section.Prop = append(section.Prop, vugu.VGProperty{Key: "hidden", JSONVal: []byte("true")})
+	section.SetInnerHTML(vugu.HTML("")) // what stood here goes
 	return &vugu.BuildOut{Out: []*vugu.VGNode{section}}
 }
