@@ -88,8 +88,12 @@ func (r *run) findCore() string {
 	if charge == nil || theta == nil {
 		return ""
 	}
-	text := fmt.Sprintf("The core carries %s, %s of its sites if there are %s", signed(charge.Text()), percent(float64(theta.Value)),
-		q.Format(r.specimen.coreSites, q.SheetDensity, 2))
+	sites := q.Format(r.specimen.coreSites, q.SheetDensity, 2)
+	if theta.Value >= 1 {
+		return fmt.Sprintf("The core carries %s, more than %s sites can hold: enter at least %s.", signed(charge.Text()), sites,
+			q.Format(r.specimen.coreSites*float64(theta.Value), q.SheetDensity, 2))
+	}
+	text := fmt.Sprintf("The core carries %s, %s of its sites if there are %s", signed(charge.Text()), percent(float64(theta.Value)), sites)
 	if seg := r.atView("core_segregation"); seg != nil {
 		text += fmt.Sprintf(", which asks for a segregation energy of %s", seg.Text())
 	}

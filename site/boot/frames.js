@@ -15,3 +15,12 @@ export function focusSoon(id, select) {
     if (select) el?.select?.();
   });
 }
+
+// reveal brings an element into view sideways inside the row that scrolls it.
+export function reveal(id) {
+  const el = document.getElementById(id);
+  const row = el?.closest(".chain, .temps ul");
+  if (!row || row.scrollWidth <= row.clientWidth) return;
+  const a = el.getBoundingClientRect(), b = row.getBoundingClientRect();
+  if (a.left < b.left || a.right > b.right) row.scrollLeft += a.left - b.left - (b.width - a.width) / 2;
+}

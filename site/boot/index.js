@@ -8,7 +8,7 @@ import {download, copyText} from "./output.js";
 import {draw, keepDrawings, savePlot, listenPicks} from "./drawing.js";
 import {theme, setTheme, onTheme} from "./theme.js";
 import {offlineState, onOffline, startOffline} from "./offline.js";
-import {nextFrame, focusSoon} from "./frames.js";
+import {nextFrame, focusSoon, reveal} from "./frames.js";
 import {listenKeys} from "./keys.js";
 import {listenVary} from "./vary.js";
 import {startProgram, newWorker, listen} from "./program.js";
@@ -19,7 +19,7 @@ window.brinkfield = {
   pick, listenFiles, download, copyText,
   draw, keepDrawings, savePlot, listenPicks,
   theme, setTheme, onTheme, offlineState, onOffline,
-  nextFrame, focusSoon, newWorker, listen,
+  nextFrame, focusSoon, reveal, newWorker, listen,
 };
 
 window.addEventListener("error", (e) => {

@@ -15,7 +15,7 @@ function entries(spec, theme, thinned) {
     return {
       mark: `<path d="${c.mobile === false ? `M3 -8${s.d}M13 -8${s.d}M8 -2${s.d}` : marks}" fill="none" stroke="${colour}" stroke-width="${s.w}" stroke-linecap="${s.cap}"/>`,
       name: speciesRuns(c.name), rest,
-      width: 24 + textWidth(speciesText(c.name), `16px ${SERIF}`) + 4 + textWidth(rest, `13px ${SANS}`) + 22,
+      width: 24 + textWidth(speciesText(c.name), `16px ${SERIF}`) + 8 + textWidth(rest, `13px ${SANS}`) + 22,
     };
   });
   list.push({
@@ -35,7 +35,7 @@ export function legendRows(spec, at, theme, y, thinned) {
     if (x > start && x + e.width - 22 > at.w) { x = start; row++; }
     const skip = e.mark ? 24 : 0;
     out += `<g transform="translate(${x.toFixed(1)} ${y + 16 + row * 22})">${e.mark}<text x="${skip}" fill="${theme.ink}">`
-      + (e.name ? `<tspan font-family='${SERIF}' font-size="16">${e.name}</tspan><tspan dx="2" fill="${theme.dim}">${escape(e.rest)}</tspan>` : `<tspan fill="${theme.dim}">${escape(e.rest)}</tspan>`)
+      + (e.name ? `<tspan font-family='${SERIF}' font-size="16">${e.name}</tspan><tspan dx="6" fill="${theme.dim}">${escape(e.rest)}</tspan>` : `<tspan fill="${theme.dim}">${escape(e.rest)}</tspan>`)
       + '</text></g>';
     x += e.width;
   }

@@ -172,6 +172,11 @@ func (b *Browser) FocusAndSelect(id string) {
 	b.AfterRender(func() { glue().Call("focusSoon", id, true) })
 }
 
+// Reveal brings an element of a row that scrolls sideways into view, after the next render.
+func (b *Browser) Reveal(id string) {
+	b.AfterRender(func() { glue().Call("reveal", id) })
+}
+
 // Report shows a mistake of the program in the banner; the page goes on.
 func (b *Browser) Report(message string) { glue().Call("report", message) }
 

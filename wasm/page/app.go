@@ -126,6 +126,12 @@ func (a *App) compute(in study.Inputs) {
 		a.Message = plain(err)
 		return
 	}
+	if a.Result == nil || a.Result.View.Spectrum != result.View.Spectrum {
+		a.Host.Reveal(chipID(result.View.Spectrum))
+	}
+	if a.Result == nil {
+		a.Host.Reveal("go-" + a.Station)
+	}
 	a.Result = result
 }
 
@@ -312,7 +318,10 @@ func (a *App) OfflineReady() bool {
 }
 
 // Go opens a station.
-func (a *App) Go(station string) { a.Station = station }
+func (a *App) Go(station string) {
+	a.Station = station
+	a.Host.Reveal("go-" + station)
+}
 
 // Shows reports whether a station is on the page.
 func (a *App) Shows(station string) bool { return a.Printing || a.Station == station }

@@ -31,6 +31,7 @@ type Host interface {
 
 	Focus(id string)
 	FocusAndSelect(id string)
+	Reveal(id string)
 	AfterRender(func())
 	After(d time.Duration, f func()) (stop func())
 	Report(message string)

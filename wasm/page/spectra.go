@@ -70,12 +70,23 @@ func (c *Spectra) why() string {
 	}
 	var parts []string
 	for _, t := range e.Fit.Trials {
-		parts = append(parts, fmt.Sprintf("%d: %s", t.Arcs, t.Why))
+		if t.Accepted {
+			parts = append([]string{fmt.Sprintf("The rule took %d %s", t.Arcs, plural(t.Arcs, "arc"))}, parts...)
+		} else {
+			parts = append(parts, fmt.Sprintf("against %d: %s", t.Arcs, t.Why))
+		}
 	}
 	for _, n := range e.Fit.Notes {
 		parts = append(parts, n.Text)
 	}
 	return strings.Join(parts, "; ")
+}
+
+func plural(n int, word string) string {
+	if n == 1 {
+		return word
+	}
+	return word + "s"
 }
 
 // omitted says how many points of the spectrum shown are left out.

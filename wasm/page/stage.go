@@ -1,6 +1,8 @@
 package page
 
 import (
+	"fmt"
+
 	"brinkfield/physics/quantity"
 	"brinkfield/physics/study"
 )
@@ -10,16 +12,16 @@ type Stage struct{ App *App }
 
 // chip is one temperature to show.
 type chip struct {
-	Text, Class string
-	At          string
-	Chosen      bool
+	ID, Text, Class string
+	At              string
+	Chosen          bool
 }
 
 // chips lists the temperatures of the spectra.
 func (a *App) chips() (list []chip) {
 	shown := a.Spectrum()
 	for i, s := range a.Typed.Spectra() {
-		one := chip{Text: unbroken(study.Celsius(s.T)), At: quantity.FormatPlain(s.T) + " K", Chosen: i == shown, Class: "chip"}
+		one := chip{ID: chipID(i), Text: unbroken(study.Celsius(s.T)), At: quantity.FormatPlain(s.T) + " K", Chosen: i == shown, Class: "chip"}
 		if a.Result != nil && i < len(a.Result.Evidence) && a.runner.Fitted(a.Typed) {
 			if e := a.Result.Evidence[i]; e.Fit == nil || !e.Validity.Pass {
 				one.Class = "chip wrong"
@@ -29,6 +31,8 @@ func (a *App) chips() (list []chip) {
 	}
 	return list
 }
+
+func chipID(i int) string { return fmt.Sprintf("chip%d", i) }
 
 // ShowAt shows a temperature in the drawing and the stations.
 func (a *App) ShowAt(at string) { a.Edit("at", at) }

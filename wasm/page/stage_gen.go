@@ -51,6 +51,7 @@ func (c *Stage) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					_ = k
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "li", Attr: []vugu.VGAttribute(nil)}
 					vgparent.AppendChild(vgn)
+					vgn.AddAttrInterface("id", k.ID)
 					{
 						vgparent := vgn
 						_ = vgparent
