@@ -43,5 +43,9 @@ var Equations = map[string]Equation{
 	"across":        {"∫ (c∞/c − 1) dx, one side", "excess resistance in metres of bulk"},
 	"along":         {"∫ (c/c∞ − 1) dx, one side", "excess conductance in metres of bulk"},
 	"sideWalls":     {"4 ΔY/(d σ_bulk)", "brick layer, walls along the current (Maier 1986/1995, memory)"},
+	"share":         {"c∞/N", "definition"},
+	"row":           {"L/d", "brick layer"},
+	"gap":           {"2λ_eff/δ − 1", "comparison of two roads"},
+	"coreRatio":     {"c₀/c∞ = c(Φ₀)/c∞, Boltzmann or site-limited", "Maier, Prog. Solid State Chem. 23, 171 (1995)"},
 	"fill":          {"k_BT ln[θ/(1−θ)] + Δg + z e Φ₀ = k_BT ln[c∞/(N−c∞)], z e N_core θ = 2 Q(Φ₀)", "Maier, Prog. Solid State Chem. 23, 171 (1995), memory"},
 }

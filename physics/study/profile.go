@@ -163,7 +163,7 @@ var profileColumns = []profileColumn{
 	{column{"field", "Field at the core", "E", q.Field, "field"}, func(l *spacecharge.Layer, _ float64) float64 { return math.Abs(l.Field) }},
 	{column{"half_distance", "Distance to half of Φ₀", "x_½", q.Length, "distance"}, distance(0.5)},
 	{column{"percent_distance", "Distance to a hundredth of Φ₀", "x_1%", q.Length, "distance"}, distance(0.01)},
-	{column{"core_ratio", "Carriers at the core over the bulk", "c₀/c∞", q.Number, ""}, func(l *spacecharge.Layer, _ float64) float64 {
+	{column{"core_ratio", "Carriers at the core over the bulk", "c₀/c∞", q.Number, "coreRatio"}, func(l *spacecharge.Layer, _ float64) float64 {
 		return l.Medium.Concentration(0, l.Phi0) / l.Medium.Species[0].Bulk
 	}},
 	{column{"across_length", "Excess across, as bulk", "ℓ_⊥", q.Length, "across"}, func(l *spacecharge.Layer, _ float64) float64 { return l.AcrossLength[0] }},

@@ -63,7 +63,7 @@ var columnList = [columns]column{
 	cBiasExpected:  {"short_bias_expected", "Bias the full layer predicts", "ΔΦ₀", q.Millivolts, "biasExpected"},
 	cWidthStar:     {"width_depletion", "Depleted width", "2λ*", q.Length, "width"},
 	cWidthSmall:    {"width_small_signal", "Width from the barrier", "2λ_eff", q.Length, "widthSmall"},
-	cGap:           {"width_gap", "Width from the barrier over width from the capacitance, less one", "2λ_eff/δ − 1", q.Fraction, ""},
+	cGap:           {"width_gap", "Width from the barrier over width from the capacitance, less one", "2λ_eff/δ − 1", q.Fraction, "gap"},
 	cClosing:       {"carriers_closing", "Carriers that close the widths", "c∞", q.NumberDensity, "closing"},
 	cClosingShare:  {"carriers_closing_share", "… as a share of the nominal ones", "c∞/nominal", q.Fraction, "closing"},
 	cCoreCharge:    {"core_charge", "Charge of the core", "Q_core", q.SurfaceCharge, "coreCharge"},

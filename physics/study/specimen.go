@@ -106,6 +106,7 @@ func (s specimen) depletion(kelvin float64) transport.Depletion {
 
 // specimenStation adds what follows from the inputs alone.
 func (r *run) specimenStation() {
+	r.entered()
 	s, kelvin := r.specimen, r.result.View.Temperature
 	add := func(id, label, symbol string, kind q.Kind, equation string, with []Put, of func(specimen) float64) {
 		r.derive(Number{ID: id, Station: "specimen", Label: label, Symbol: symbol, Kind: kind, Equation: equation, With: with}, of)
@@ -113,7 +114,7 @@ func (r *run) specimenStation() {
 	add("carriers", "Carriers in the grain", "c∞", q.NumberDensity, "carriers",
 		[]Put{put("x", s.dopant, q.Fraction), put("N_c", s.cationSites, q.NumberDensity), put("z_D", float64(s.dopantCharge), q.Number), put("z", float64(s.carrierCharge), q.Number)},
 		specimen.carrierDensity)
-	add("site_share", "Share of carrier sites", "c∞/N", q.Fraction, "", nil, func(s specimen) float64 { return s.carrierDensity() / s.carrierSites })
+	add("site_share", "Share of carrier sites", "c∞/N", q.Fraction, "share", nil, func(s specimen) float64 { return s.carrierDensity() / s.carrierSites })
 	lengths := []Put{put("ε_r", s.epsr, q.Number), put("T", kelvin, q.Temperature), put("c∞", s.carrierDensity(), q.NumberDensity)}
 	add("debye", "Debye length, all mobile species", "λ_D", q.Length, "debye", lengths, func(s specimen) float64 { return s.length(kelvin, (*spacecharge.Medium).Debye) })
 	add("debye_majority", "Debye length, majority carrier", "λ", q.Length, "debyeMajority", lengths, func(s specimen) float64 {
@@ -122,8 +123,27 @@ func (r *run) specimenStation() {
 	add("cell_constant", "Thickness over area", "L/(A f)", q.InverseLength, "cell",
 		[]Put{put("L", s.brick.Length, q.Length), put("A", s.brick.Area, q.Area), put("p", s.brick.Porosity, q.Fraction)},
 		func(s specimen) float64 { return s.brick.CellConstant() })
-	add("grains_across", "Boundaries in a row", "L/d", q.Number, "", nil, func(s specimen) float64 { return s.brick.Length / s.brick.Grain })
+	add("grains_across", "Boundaries in a row", "L/d", q.Number, "row", nil, func(s specimen) float64 { return s.brick.Length / s.brick.Grain })
 	r.headline("specimen", fmt.Sprintf("%s dopant · %s", percent(s.dopant), q.Format(s.brick.Grain, q.Length, 3)))
+}
+
+// entered adds what a person typed as numbers, each with its ± as interval.
+func (r *run) entered() {
+	for _, f := range Fields {
+		u := r.read[f.Param]
+		if (f.Sort != Measure && f.Sort != Integer) || math.IsNaN(u.Value) {
+			continue
+		}
+		kind := f.Kind
+		if f.Sort == Integer {
+			kind = q.Number
+		}
+		n := Number{ID: "entered_" + f.Param, Station: f.Station, Label: f.Label, Symbol: f.Symbol, Kind: kind, Value: Float(u.Value), Source: Entered}
+		if u.Plus > 0 {
+			n.Low, n.High = Float(u.Value-u.Plus), Float(u.Value+u.Plus)
+		}
+		r.add(n)
+	}
 }
 
 func (s specimen) length(kelvin float64, of func(*spacecharge.Medium) float64) float64 {

@@ -18,13 +18,14 @@ func (c *Specimen) lead() string {
 	return "What was weighed in, pressed and fired. Each ± is a 95 % half-width, 10 % or in the unit of the value. Drag a name sideways, or press the arrow keys in a field, to vary a value."
 }
 
-// numbersOf lists the results of a station that belong to no spectrum.
+// numbersOf lists the results of a station that belong to no spectrum, without
+// what was typed.
 func (a *App) numbersOf(station string) (list []study.Number) {
 	if a.Result == nil {
 		return nil
 	}
 	for _, n := range a.Result.Numbers {
-		if n.Station == station && n.Spectrum == 0 {
+		if n.Station == station && n.Spectrum == 0 && n.Source != study.Entered {
 			list = append(list, n)
 		}
 	}
