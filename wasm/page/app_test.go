@@ -131,7 +131,7 @@ func TestPreview(t *testing.T) {
 		t.Errorf("in kΩ: %g Ω", z)
 	}
 	f.SetColumn(3, impedance.NegatedImaginary.String())
-	f.SetSign("written")
+	f.SetSign("negated")
 	if z := imag(f.Reading.Spectra[0].Points[0].Z); z != 50 {
 		t.Errorf("negated: %g", z)
 	}

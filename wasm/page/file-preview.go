@@ -46,10 +46,10 @@ func (c *FilePreview) corrections() (list []correction) {
 			{ID: id, Label: name, Options: quantities, Chosen: col.Quantity.String(), Pick: func(q string) { c.File.SetColumn(col.Number, q) }},
 			{ID: id + "-unit", Label: "unit of " + name, Options: unitChoices(col.Quantity), Chosen: col.Unit, Pick: func(u string) { c.File.SetUnit(col.Number, u) }}}})
 	}
-	signs := map[string]string{"": "as understood", "written": "as written", "turned": "turned round"}
-	sign := map[impedance.Sign]string{impedance.SignAsIs: "written", impedance.SignFlipped: "turned"}[c.File.Options.Sign]
+	signs := map[string]string{"": "as understood", "as is": "numbers are Z″ (capacitive: negative)", "negated": "numbers are −Z″ (capacitive: positive)"}
+	sign := map[impedance.Sign]string{impedance.SignAsIs: "as is", impedance.SignFlipped: "negated"}[c.File.Options.Sign]
 	return append(list,
-		correction{c.id("sign"), "sign of Z″ or phase", []Select{{ID: c.id("sign"), Label: "sign", Options: []string{"", "written", "turned"}, Chosen: sign, Names: signs, Pick: c.File.SetSign}}},
+		correction{c.id("sign"), "sign of Z″ or phase", []Select{{ID: c.id("sign"), Label: "sign", Options: []string{"", "as is", "negated"}, Chosen: sign, Names: signs, Pick: c.File.SetSign}}},
 		correction{c.id("decimal"), "decimal mark", []Select{{ID: c.id("decimal"), Label: "decimal mark", Options: []string{"", ".", ","}, Chosen: c.File.Options.Decimal,
 			Names: map[string]string{"": "as understood", ".": "point", ",": "comma"}, Pick: c.File.SetDecimal}}})
 }

@@ -166,9 +166,9 @@ func (f *PreviewFile) choose(number int, choice impedance.ColumnChoice) {
 	f.read()
 }
 
-// SetSign takes "written" or "turned", or "" for what the file says.
+// SetSign takes "as is" or "negated", or "" for what the file says.
 func (f *PreviewFile) SetSign(choice string) {
-	f.Options.Sign = map[string]impedance.Sign{"written": impedance.SignAsIs, "turned": impedance.SignFlipped}[choice]
+	f.Options.Sign = map[string]impedance.Sign{"as is": impedance.SignAsIs, "negated": impedance.SignFlipped}[choice]
 	f.read()
 }
 
