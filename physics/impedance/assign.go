@@ -4,8 +4,6 @@ import (
 	"fmt"
 	"math"
 	"slices"
-
-	"brinkfield/physics/quantity"
 )
 
 // band is the range of capacitance a role is found in, for thickness/area of
@@ -139,9 +137,6 @@ func apply(f *Fit, c Controls, roles []Role, together bool) {
 		a := &f.Arcs[k]
 		a.Role = roles[k]
 		cap := f.seenCapacitance(k)
-		if c.CellConstant > 0 {
-			a.RelativeEpsilon = cap * c.CellConstant / quantity.VacuumPermittivity
-		}
 		_, given := c.Assign[k]
 		switch {
 		case given:
@@ -151,9 +146,6 @@ func apply(f *Fit, c Controls, roles []Role, together bool) {
 			f.note(cap, "arc %d (%.2g F) could not be assigned", k+1, cap)
 		default:
 			a.RoleWhy = fmt.Sprintf("%.2g F, %s fastest of %d", cap, [...]string{"the", "second", "third"}[k], len(f.Arcs))
-			if c.CellConstant > 0 {
-				a.RoleWhy += fmt.Sprintf(", ε_r %.3g if it filled the specimen", a.RelativeEpsilon)
-			}
 			if together {
 				a.RoleWhy += ", consistent over all temperatures"
 			}

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"strconv"
+
+	"brinkfield/physics/quantity"
 )
 
 // sameTemperature is the difference in K below which two files are one temperature.
@@ -38,10 +40,10 @@ func Combine(readings ...Reading) ([]Spectrum, []Note, error) {
 				prev.Points = append(append([]Point(nil), prev.Points...), s.Points...)
 				prev.Source += " + " + s.Source
 				prev.Sort()
-				notes = append(notes, Note{fmt.Sprintf("%s are joined at %.6g K", prev.Source, s.T), s.T})
+				notes = append(notes, Note{fmt.Sprintf("%s are joined at %.6g °C", prev.Source, s.T-quantity.ZeroCelsius), s.T})
 				continue
 			}
-			notes = append(notes, Note{fmt.Sprintf("%s and %s are both at %.6g K; both are kept", prev.Source, s.Source, s.T), s.T})
+			notes = append(notes, Note{fmt.Sprintf("%s and %s are both at %.6g °C; both are kept", prev.Source, s.Source, s.T-quantity.ZeroCelsius), s.T})
 		}
 		out = append(out, s)
 	}

@@ -61,14 +61,13 @@ func (e Estimate) Resolved() bool { return e.Kind != AtLeast && e.Kind != AtMost
 
 // FittedArc is one arc of a fit. Units: R Ω, Q S sⁿ, C F, Tau s, Peak Hz.
 type FittedArc struct {
-	Arc             Arc
-	Role            Role
-	RoleWhy         string
-	R, Q, N         Estimate
-	C, Tau, Peak    Estimate
-	PeakInWindow    bool
-	below           bool    // top below the window
-	RelativeEpsilon float64 // C L/(A ε₀), 0 without a cell constant
+	Arc          Arc
+	Role         Role
+	RoleWhy      string
+	R, Q, N      Estimate
+	C, Tau, Peak Estimate
+	PeakInWindow bool
+	below        bool // top below the window
 }
 
 // Trial is one row of the table of tried numbers of arcs.

@@ -96,7 +96,7 @@ var steps = map[string][]string{
 	"Hz":  {"mHz", "Hz", "kHz", "MHz"},
 	"V":   {"V"},
 	"J":   {"eV"},
-	"m2":  {"nm2", "cm2"},
+	"m2":  {"nm2", "mm2", "cm2"},
 	"H":   {"nH", "µH", "mH", "H"},
 	"V/K": {"mV/K"},
 	"m-1": {"cm-1"},

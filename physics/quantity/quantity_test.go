@@ -30,6 +30,7 @@ func TestParse(t *testing.T) {
 		{"2.5×10²⁸ m⁻³", NumberDensity, 2.5e28},
 		{"2.5x10^28 1/m3", NumberDensity, 2.5e28},
 		{"1 nm^-2", SheetDensity, 1e18},
+		{"1.35e22 per cm3", NumberDensity, 1.35e28},
 		{"1 %", Fraction, 0.01},
 		{"200 ppm", Fraction, 2e-4},
 		{"0.01", Fraction, 0.01},

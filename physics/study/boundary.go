@@ -62,10 +62,10 @@ var missingReason = map[int]string{
 	cPhiShort:     "the ratio of time constants is below e/2, where the short form has no barrier",
 	cBias:         "the short form has no barrier here",
 	cBiasExpected: "the short form has no barrier here",
-	cWidthSmall:   "the barrier is below k_BT/|z|e: no depletion layer",
-	cGap:          "the barrier is below k_BT/|z|e: no depletion layer",
-	cClosing:      "the barrier is below k_BT/|z|e: no depletion layer",
-	cClosingShare: "the barrier is below k_BT/|z|e: no depletion layer",
+	cWidthSmall:   "the barrier is below k_B T/|z|e: no depletion layer",
+	cGap:          "the barrier is below k_B T/|z|e: no depletion layer",
+	cClosing:      "the barrier is below k_B T/|z|e: no depletion layer",
+	cClosingShare: "the barrier is below k_B T/|z|e: no depletion layer",
 	cSegregation:  "the core would need more sites than entered",
 }
 
@@ -206,10 +206,11 @@ type Move struct {
 	Symbol string `json:"symbol"`
 	Change string `json:"change"`
 	Shift  Float  `json:"shift_V"`
+	Stated bool   `json:"stated,omitempty"` // the change is the ± that was stated
 }
 
 // moves recomputes the barrier of the temperature shown with one input moved at a
-// time: by a tenth, the temperature by 10 K.
+// time: by a tenth, the temperature by 10 K; then every input with a stated ± by that.
 func (r *run) moves() (list []Move) {
 	base := r.viewRow()
 	if base == nil {
@@ -243,6 +244,28 @@ func (r *run) moves() (list []Move) {
 		moved := readRow(s, &f, p, base.v[cPhiFull], 0)
 		for _, c := range m.routes {
 			list = append(list, Move{Route: routeKeys[c], Input: m.input, Symbol: m.symbol, Change: m.change, Shift: Float(moved.v[c] - base.v[c])})
+		}
+	}
+	return append(list, r.statedMoves(base, fit)...)
+}
+
+// statedMoves moves every input with a stated ± up by it.
+func (r *run) statedMoves(base *row, fit *impedance.Fit) (list []Move) {
+	for k, one := range varied {
+		u, f := r.read[one.param], FieldOf(one.param)
+		if u.Plus == 0 || math.IsNaN(u.Value) {
+			continue
+		}
+		drawn := -1
+		s := r.specimen.sampled(r.read, func() float64 { // this input alone, one half-width up
+			if drawn++; drawn == k {
+				return halfWidth95
+			}
+			return 0
+		})
+		moved := readRow(s, fit, fit.Params, base.v[cPhiFull], 0)
+		for _, c := range []int{cPhiShort, cPhiDepletion, cPhiFull} {
+			list = append(list, Move{Route: routeKeys[c], Input: f.Label, Symbol: f.Symbol, Change: "± " + PlusText(f, u), Shift: Float(moved.v[c] - base.v[c]), Stated: true})
 		}
 	}
 	return list

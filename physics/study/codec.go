@@ -39,7 +39,6 @@ type arcWire struct {
 	Why                  string
 	R, Q, N, C, Tau, Top estimateWire
 	In                   bool
-	Epsilon              Float
 }
 
 type fitWire struct {
@@ -123,7 +122,7 @@ func fitToWire(f *impedance.Fit) *fitWire {
 	}
 	for _, a := range f.Arcs {
 		w.Arcs = append(w.Arcs, arcWire{a.Role, a.RoleWhy, estimateToWire(a.R), estimateToWire(a.Q), estimateToWire(a.N), estimateToWire(a.C),
-			estimateToWire(a.Tau), estimateToWire(a.Peak), a.PeakInWindow, Float(a.RelativeEpsilon)})
+			estimateToWire(a.Tau), estimateToWire(a.Peak), a.PeakInWindow})
 	}
 	for _, t := range f.Trials {
 		w.Trials = append(w.Trials, trialWire{t.Arcs, t.Free, Float(t.AICc), Float(t.Sigma), Float(t.Inflation), t.Accepted, t.Why})
@@ -145,7 +144,7 @@ func fitFromWire(w *fitWire) *impedance.Fit {
 	arcs := impedance.ArcsOf(f.Params)
 	for k, a := range w.Arcs {
 		f.Arcs = append(f.Arcs, impedance.FittedArc{Arc: arcs[k], Role: a.Role, RoleWhy: a.Why, R: a.R.estimate(), Q: a.Q.estimate(), N: a.N.estimate(),
-			C: a.C.estimate(), Tau: a.Tau.estimate(), Peak: a.Top.estimate(), PeakInWindow: a.In, RelativeEpsilon: float64(a.Epsilon)})
+			C: a.C.estimate(), Tau: a.Tau.estimate(), Peak: a.Top.estimate(), PeakInWindow: a.In})
 	}
 	for _, t := range w.Trials {
 		f.Trials = append(f.Trials, impedance.Trial{Arcs: t.Arcs, Free: t.Free, AICc: float64(t.AICc), Sigma: float64(t.Sigma), Inflation: float64(t.Inflation), Accepted: t.Accepted, Why: t.Why})

@@ -5,6 +5,7 @@ import (
 	"encoding/json"
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"brinkfield/physics/impedance"
@@ -22,6 +23,7 @@ type caseFile struct {
 	Format     int                 `json:"format"`
 	Link       string              `json:"link"`
 	Parameters map[string]string   `json:"parameters"`
+	NotTyped   []string            `json:"not_typed,omitempty"` // parameters nobody has typed: the demo's values
 	Spectra    []spectrumRecord    `json:"spectra,omitempty"`
 	Findings   []string            `json:"findings,omitempty"`
 	Numbers    []Number            `json:"numbers,omitempty"`
@@ -60,7 +62,7 @@ type arcRecord struct {
 // that was found, with unit, interval, source and flags.
 func (r *Result) JSON() ([]byte, error) {
 	f := caseFile{Program: Program, Format: Format, Link: r.Inputs.withoutData().Link(), Parameters: r.Inputs.withoutData().all(), Findings: r.Findings,
-		Numbers: r.Numbers, Flags: r.Flags, Moves: r.Moves, Equations: map[string]Equation{}, Cautions: Cautions}
+		NotTyped: r.Inputs.notTyped(), Numbers: r.Numbers, Flags: r.Flags, Moves: r.Moves, Equations: map[string]Equation{}, Cautions: Cautions}
 	for _, n := range r.Numbers {
 		if e, ok := Equations[n.Equation]; ok {
 			f.Equations[n.Equation] = e
@@ -101,6 +103,16 @@ func (in Inputs) withoutData() Inputs {
 	return out
 }
 
+// notTyped lists the parameters that stand at their default.
+func (in Inputs) notTyped() (list []string) {
+	for _, f := range Fields {
+		if _, typed := in.Text[f.Param]; !typed && f.Param != "data" {
+			list = append(list, f.Param)
+		}
+	}
+	return list
+}
+
 // all lists every parameter with its text, defaults included.
 func (in Inputs) all() map[string]string {
 	m := map[string]string{}
@@ -108,8 +120,8 @@ func (in Inputs) all() map[string]string {
 		if f.Param == "data" {
 			continue
 		}
-		m[f.Param] = in.Get(f.Param)
-		if t := in.Text[f.PlusName]; f.PlusName != "" && t != "" {
+		m[f.Param] = strings.TrimSpace(in.Get(f.Param))
+		if t := strings.TrimSpace(in.Text[f.PlusName]); f.PlusName != "" && t != "" {
 			m[f.PlusName] = t
 		}
 	}
@@ -131,9 +143,11 @@ func Open(data []byte) (Inputs, error) {
 	in := Defaults()
 	for name, text := range f.Parameters {
 		if !known(name) || name == "data" {
-			return Inputs{}, fmt.Errorf("study: case file has an unknown parameter (%q), expected one of %s", name, strings.Join(names(), ", "))
+			return Inputs{}, fmt.Errorf("study: case file has an unknown parameter (%q), expected %s", name, nearest(name))
 		}
-		in.set(name, text)
+		if !slices.Contains(f.NotTyped, name) || text != in.Get(name) {
+			in.set(name, text)
+		}
 	}
 	if in.Get("spectra") != "data" {
 		return in, nil

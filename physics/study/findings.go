@@ -33,7 +33,7 @@ func (r *run) findShare() string {
 	if shown == nil {
 		shown = &series[len(series)/2]
 	}
-	text := fmt.Sprintf("Grain boundaries take %s of the resistance at %s", shareText(*shown), celsius(float64(shown.Temperature)))
+	text := fmt.Sprintf("Grain boundaries take %s of the ceramic's resistance at %s", shareText(*shown), celsius(float64(shown.Temperature)))
 	if first, last := series[0], series[len(series)-1]; len(series) > 1 {
 		text += fmt.Sprintf(" (%s at %s, %s at %s)", shareText(first), celsius(float64(first.Temperature)), shareText(last), celsius(float64(last.Temperature)))
 	}
@@ -124,24 +124,34 @@ func (r *run) atViewValue(id string) float64 {
 	return math.NaN()
 }
 
-// findMoves says what would change the answer: the inputs of the chosen route,
-// the one that moves the barrier most first.
+// findMoves says what would change the answer: each input moved by a tenth, the
+// temperature by 10 K, the one that moves the barrier most first; and, where a ± is
+// stated, what the interval is made of.
 func (r *run) findMoves() string {
+	text := r.movesText(false, func(m Move) string { return map[bool]string{true: " (+10 K)"}[m.Symbol == "T"] })
+	if text == "" {
+		return ""
+	}
+	text = "What would change Φ₀, for 10 % more of each: " + text + "."
+	if stated := r.movesText(true, func(Move) string { return "" }); stated != "" {
+		text += " What the interval is made of: " + strings.ReplaceAll(strings.ReplaceAll(stated, "+", "±"), "−", "±") + ", and the fit."
+	}
+	return text + " The dopant is taken as frozen and flat."
+}
+
+func (r *run) movesText(stated bool, note func(Move) string) string {
 	var used []Move
 	for _, m := range r.result.Moves {
-		if m.Route == r.in.Get("route") && m.Symbol != "T" && math.Abs(float64(m.Shift)) > 1e-4 {
+		if m.Route == r.in.Get("route") && m.Stated == stated && math.Abs(float64(m.Shift)) > 1e-4 {
 			used = append(used, m)
 		}
 	}
-	if len(used) == 0 {
-		return ""
-	}
 	slices.SortStableFunc(used, func(a, b Move) int { return cmp.Compare(math.Abs(float64(b.Shift)), math.Abs(float64(a.Shift))) })
 	var list []string
-	for _, m := range used[:min(4, len(used))] {
-		list = append(list, fmt.Sprintf("%s %s mV", strings.ToLower(m.Input[:1])+m.Input[1:], signed(q.FormatNumber(1e3*float64(m.Shift), 2))))
+	for _, m := range used[:min(5, len(used))] {
+		list = append(list, fmt.Sprintf("%s%s %s mV", strings.ToLower(m.Input[:1])+m.Input[1:], note(m), signed(q.FormatNumber(1e3*float64(m.Shift), 2))))
 	}
-	return "What would change Φ₀, for 10 % more of each: " + strings.Join(list, ", ") + ". The dopant is taken as frozen and flat."
+	return strings.Join(list, ", ")
 }
 
 // findLeftOut lists the temperatures without a barrier, with the reason.

@@ -18,6 +18,7 @@ const (
 	permittivityLimit = 0.1  // relative difference of arc and entered permittivity
 	sideWallLimit     = 0.02
 	exponentLimit     = 0.9
+	misfit            = 3.0 // scatter about the fit over the noise of the data
 
 	// arcAllowance is how far the capacitance read from a depletion layer's arc may
 	// stand from its small-signal capacitance: the arc is not exactly one R and C.
@@ -33,7 +34,7 @@ func (r *run) raise(f Flag, kelvin float64) {
 			continue
 		}
 		if math.Abs(float64(f.Value-f.Limit)) > math.Abs(float64(have.Value-have.Limit)) {
-			have.Text, have.Value, have.Limit = f.Text, f.Value, f.Limit
+			have.Text, have.Value, have.Limit, have.Worst = f.Text, f.Value, f.Limit, Float(kelvin)
 		}
 		if kelvin > 0 {
 			have.At = append(have.At, Float(kelvin))
@@ -41,7 +42,7 @@ func (r *run) raise(f Flag, kelvin float64) {
 		return
 	}
 	if kelvin > 0 {
-		f.At = []Float{Float(kelvin)}
+		f.At, f.Worst = []Float{Float(kelvin)}, Float(kelvin)
 	}
 	r.result.Flags = append(r.result.Flags, f)
 }
@@ -54,6 +55,7 @@ func (r *run) raiseFlags() {
 			r.flagRow(i)
 		}
 	}
+	r.flagBorrowed()
 	r.flagLayer()
 	for i := range r.result.Numbers {
 		r.result.Numbers[i].Flags = r.flagsOf(r.result.Numbers[i])
@@ -63,6 +65,7 @@ func (r *run) raiseFlags() {
 // touched says which numbers a flag speaks of.
 var touched = map[string][]string{
 	"not_valid":     {"r_interior", "r_boundary", "phi0_full", "phi0_short", "phi0_depletion"},
+	"misfit":        {"r_interior", "r_boundary", "noise", "phi0_full", "phi0_short", "phi0_depletion", "sigma_bulk", "sigma_total"},
 	"spread":        {"n_boundary", "phi0_full", "phi0_short", "phi0_depletion"},
 	"window":        {"r_interior", "sigma_bulk"},
 	"widths":        {"width_small_signal", "width_electrical", "width_gap", "phi0_full", "core_charge"},
@@ -95,17 +98,40 @@ func containsFloat(list []Float, v Float) bool {
 	return false
 }
 
+// flagBorrowed names what is still the demo's in a case of one's own.
+func (r *run) flagBorrowed() {
+	if len(r.evidence) == 0 {
+		return
+	}
+	var list []string
+	for _, p := range []string{"epsr", "cation_sites", "carrier_sites", "dopant", "grain", "thickness", "area", "core_sites"} {
+		if r.in.Borrowed(p) {
+			f := FieldOf(p)
+			list = append(list, fmt.Sprintf("%s %s", strings.ToLower(f.Label[:1])+f.Label[1:], f.Default))
+		}
+	}
+	if len(list) > 0 {
+		r.raise(Flag{ID: "borrowed", Station: "specimen", Text: "These values are still the demo's, not yours: " + strings.Join(list, ", ") + ".",
+			Value: Float(len(list)), Limit: 0, Unit: "fields"}, 0)
+	}
+}
+
 func (r *run) flagSpectrum(e Evidence) {
 	t := e.Spectrum.T
 	if e.Fit == nil {
-		r.raise(Flag{ID: "refused", Station: "spectra", Text: fmt.Sprintf("No fit at %s: %s.", celsius(t), e.Refused),
+		r.raise(Flag{ID: "refused", Station: "spectra", Text: fmt.Sprintf("No fit: %s.", e.Refused),
 			Value: Float(len(e.Spectrum.Points)), Limit: impedance.MinFitPoints, Unit: "points"}, t)
 		return
 	}
 	if !e.Validity.Pass {
 		r.raise(Flag{ID: "not_valid", Station: "spectra",
-			Text:  fmt.Sprintf("Linear Kramers–Kronig test not passed at %s: %s.", celsius(t), failing(e.Validity)),
+			Text:  fmt.Sprintf("Linear Kramers–Kronig test not passed: %s.", failing(e.Validity)),
 			Value: Float(e.Validity.Worst), Limit: Float(e.Validity.Threshold)}, t)
+	}
+	if s, limit := e.Fit.Sigma, misfit*e.Validity.Noise; s > limit && s > 0.005 {
+		r.raise(Flag{ID: "misfit", Station: "spectra",
+			Text:  fmt.Sprintf("The arcs do not describe the spectrum: scatter about the fit %s of |Z|, noise of the data %s. Numbers from this fit are not to be trusted.", percent(s), percent(e.Validity.Noise)),
+			Value: Float(s), Limit: Float(limit)}, t)
 	}
 	if b := e.Fit.Arc(impedance.Boundary); b != nil && b.N.Value < exponentLimit {
 		r.raise(Flag{ID: "spread", Station: "spectra",

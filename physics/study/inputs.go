@@ -21,6 +21,19 @@ type Inputs struct {
 // Defaults are the inputs of the demo case.
 func Defaults() Inputs { return Inputs{Text: map[string]string{}} }
 
+// Borrowed reports that a value is the demo's while the spectra are not: nobody
+// has said that it holds for this specimen.
+func (in Inputs) Borrowed(param string) bool {
+	_, typed := in.Text[param]
+	return !typed && in.Get("spectra") != "demo" && FieldOf(param).Default != ""
+}
+
+// NewCase are the inputs of an empty case: no spectra, the demo's specimen until
+// it is typed over.
+func NewCase() Inputs {
+	return Inputs{Text: map[string]string{"spectra": "none", "title": "New case"}}
+}
+
 // Clone copies the inputs; the spectra are shared, they are never changed.
 func (in Inputs) Clone() Inputs {
 	return Inputs{Text: maps.Clone(in.Text), Own: in.Own}
@@ -37,8 +50,9 @@ func (in Inputs) Get(param string) string {
 	return ""
 }
 
-// With returns a copy with one parameter set. Setting the default forgets it, so
-// that links stay short.
+// With returns a copy with one parameter set. Choices and controls forget their
+// default, so that links stay short; what a person measured is kept even where it
+// equals the demo's value.
 func (in Inputs) With(param, text string) Inputs {
 	out := in.Clone()
 	out.set(param, text)
@@ -46,16 +60,20 @@ func (in Inputs) With(param, text string) Inputs {
 }
 
 func (in *Inputs) set(param, text string) {
-	text = strings.TrimSpace(text)
-	def := ""
+	trimmed := strings.TrimSpace(text)
+	f, isField := Field{}, false
 	if i, ok := fieldIndex[param]; ok {
-		def = Fields[i].Default
+		f, isField = Fields[i], true
 	}
-	if text == def {
+	typed := isField && (f.Sort == Measure || f.Sort == Integer || f.Sort == Words)
+	if trimmed == f.Default && !(typed && trimmed != "") {
 		delete(in.Text, param)
 		return
 	}
-	in.Text[param] = text
+	if !typed && isField {
+		text = trimmed
+	}
+	in.Text[param] = text // blanks at the ends of typed texts are kept: a person may be about to go on typing
 }
 
 // WithoutControls returns a copy without the wishes for the fit, which speak of

@@ -32,7 +32,7 @@ func Parse(link string) (Inputs, Problems) {
 		case !ok:
 			problems = append(problems, Problem{name, fmt.Sprintf("parameter has no value (%q), expected name=value", pair)})
 		case !known(name):
-			problems = append(problems, Problem{name, fmt.Sprintf("parameter is not known (%q), expected one of %s", name, strings.Join(names(), ", "))})
+			problems = append(problems, Problem{name, fmt.Sprintf("parameter is not known (%q), expected %s", name, nearest(name))})
 		case err != nil:
 			problems = append(problems, Problem{name, fmt.Sprintf("text is not readable (%q), expected percent-encoding", value)})
 		default:
@@ -82,6 +82,20 @@ func parameters(link string) string {
 	return link
 }
 
+// nearest names the parameters that begin alike, or says where all are listed.
+func nearest(name string) string {
+	var list []string
+	for _, n := range names() {
+		if len(name) > 2 && strings.HasPrefix(n, name[:3]) {
+			list = append(list, n)
+		}
+	}
+	if len(list) == 0 {
+		return "one of those listed in physics/study/PARAMETERS.md"
+	}
+	return strings.Join(list, " or ")
+}
+
 func names() (list []string) {
 	for _, f := range Fields {
 		list = append(list, f.Param)
@@ -103,7 +117,7 @@ func (in Inputs) Link() string {
 	var parts []string
 	add := func(name string) {
 		if text, ok := in.Text[name]; name != "" && ok {
-			parts = append(parts, name+"="+escape(text))
+			parts = append(parts, name+"="+escape(strings.TrimSpace(text)))
 		}
 	}
 	for _, f := range Fields {

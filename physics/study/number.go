@@ -144,4 +144,5 @@ type Flag struct {
 	Limit   Float   `json:"limit"`
 	Unit    string  `json:"unit,omitempty"`
 	At      []Float `json:"temperatures_K,omitempty"`
+	Worst   Float   `json:"worst_K,omitempty"` // the temperature its numbers belong to
 }

@@ -65,6 +65,8 @@ func (r *run) profileStation() {
 	if math.IsNaN(sigma) {
 		sigma = 0
 	}
+	view.Debye = r.specimen.length(view.Temperature, (*spacecharge.Medium).Debye)
+	view.HalfGrain = r.specimen.brick.Grain / 2
 	phi, err := r.shownBarrier(r.specimen, r.rows, 0)
 	if err != nil {
 		view.Missing = plainError(err)
@@ -166,10 +168,10 @@ var profileColumns = []profileColumn{
 	{column{"core_ratio", "Carriers at the core over the bulk", "c₀/c∞", q.Number, "coreRatio"}, func(l *spacecharge.Layer, _ float64) float64 {
 		return l.Medium.Concentration(0, l.Phi0) / l.Medium.Species[0].Bulk
 	}},
-	{column{"across_length", "Excess across, as bulk", "ℓ_⊥", q.Length, "across"}, func(l *spacecharge.Layer, _ float64) float64 { return l.AcrossLength[0] }},
-	{column{"along_length", "Excess along, as bulk", "ℓ_∥", q.Length, "along"}, func(l *spacecharge.Layer, _ float64) float64 { return l.AlongLength[0] }},
-	{column{"across", "Excess resistance of one side", "ΔR", q.AreaResistance, "across"}, func(l *spacecharge.Layer, sigma float64) float64 { return l.AcrossLength[0] / sigma }},
-	{column{"along", "Excess sheet conductance of one side", "ΔY", q.Conductance, "along"}, func(l *spacecharge.Layer, sigma float64) float64 { return l.AlongLength[0] * sigma }},
+	{column{"across_length", "Extra resistance across, as a length of bulk", "ℓ_⊥", q.Length, "across"}, func(l *spacecharge.Layer, _ float64) float64 { return l.AcrossLength[0] }},
+	{column{"along_length", "Extra conduction along, as a length of bulk", "ℓ_∥", q.Length, "along"}, func(l *spacecharge.Layer, _ float64) float64 { return l.AlongLength[0] }},
+	{column{"across", "Extra resistance of one side", "ΔR", q.AreaResistance, "acrossOhm"}, func(l *spacecharge.Layer, sigma float64) float64 { return l.AcrossLength[0] / sigma }},
+	{column{"along", "Extra sheet conductance of one side", "ΔY", q.Conductance, "alongSiemens"}, func(l *spacecharge.Layer, sigma float64) float64 { return l.AlongLength[0] * sigma }},
 }
 
 func (r *run) profileNumbers(layer *spacecharge.Layer, sigma float64) {

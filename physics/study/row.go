@@ -59,17 +59,17 @@ var columnList = [columns]column{
 	cPhiShort:      {"phi0_short", "Barrier, short form", "Φ₀", q.Potential, "phiShort"},
 	cPhiDepletion:  {"phi0_depletion", "Barrier, exact depletion", "Φ₀", q.Potential, "phiDepletion"},
 	cPhiFull:       {"phi0_full", "Barrier, full layer", "Φ₀", q.Potential, "phiFull"},
-	cBias:          {"short_bias", "Short form minus full layer", "ΔΦ₀", q.Millivolts, "bias"},
-	cBiasExpected:  {"short_bias_expected", "Bias the full layer predicts", "ΔΦ₀", q.Millivolts, "biasExpected"},
+	cBias:          {"short_bias", "Error of the short form, as read", "ΔΦ₀", q.Millivolts, "bias"},
+	cBiasExpected:  {"short_bias_expected", "Error of the short form, as the full layer predicts it", "ΔΦ₀", q.Millivolts, "biasExpected"},
 	cWidthStar:     {"width_depletion", "Depleted width", "2λ*", q.Length, "width"},
 	cWidthSmall:    {"width_small_signal", "Width from the barrier", "2λ_eff", q.Length, "widthSmall"},
 	cGap:           {"width_gap", "Width from the barrier over width from the capacitance, less one", "2λ_eff/δ − 1", q.Fraction, "gap"},
-	cClosing:       {"carriers_closing", "Carriers that close the widths", "c∞", q.NumberDensity, "closing"},
-	cClosingShare:  {"carriers_closing_share", "… as a share of the nominal ones", "c∞/nominal", q.Fraction, "closing"},
+	cClosing:       {"carriers_closing", "Carrier density that would make the widths agree", "c∞", q.NumberDensity, "closing"},
+	cClosingShare:  {"carriers_closing_share", "… over the entered one", "c∞/nominal", q.Fraction, "closingShare"},
 	cCoreCharge:    {"core_charge", "Charge of the core", "Q_core", q.SurfaceCharge, "coreCharge"},
 	cOccupancy:     {"core_occupancy", "Occupancy of the core sites", "θ", q.Fraction, "occupancy"},
 	cSegregation:   {"core_segregation", "Segregation energy", "Δg", q.Energy, "segregation"},
-	cSideWalls:     {"side_walls", "Change of conduction by side walls", "", q.Fraction, "sideWalls"},
+	cSideWalls:     {"side_walls", "Conduction changed by side walls", "", q.Fraction, "sideWalls"},
 }
 
 // row is what one spectrum says about the boundary. Missing values are NaN.

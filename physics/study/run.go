@@ -205,7 +205,9 @@ func (r *run) sample(ctx context.Context) error {
 		if len(list) < r.options.Samples*9/10 || n.Bound != Exact {
 			continue
 		}
-		slices.Sort(list)
+		if slices.Sort(list); list[0] == list[len(list)-1] {
+			continue // nothing that it rests on is uncertain
+		}
 		n.Low, n.High = Float(quantile(list, 0.025)), Float(quantile(list, 0.975))
 	}
 	return nil

@@ -67,25 +67,30 @@ func FindingsText(r *Result) string {
 		fmt.Fprintf(&b, "  %s\n", f)
 	}
 	for _, f := range r.Flags {
-		fmt.Fprintf(&b, "  ! %s%s\n", f.Text, atText(f.At))
+		fmt.Fprintf(&b, "  ! %s%s\n", f.Text, atText(f))
 	}
 	return b.String()
 }
 
 // atText lists the temperatures of a flag.
-func atText(at []Float) string {
-	if len(at) < 2 {
+func atText(f Flag) string {
+	if len(f.At) == 0 {
 		return ""
 	}
-	var list []string
-	for _, t := range at {
-		list = append(list, celsius(float64(t)))
+	if len(f.At) == 1 {
+		return " (" + celsius(float64(f.At[0])) + ")"
 	}
-	return " (" + strings.Join(list, ", ") + ")"
+	var list []string
+	for _, t := range f.At {
+		if t != f.Worst {
+			list = append(list, celsius(float64(t)))
+		}
+	}
+	return " (" + celsius(float64(f.Worst)) + "; also " + strings.Join(list, ", ") + ")"
 }
 
 // Sentence is the flag as it is shown: its text and where it holds.
-func (f Flag) Sentence() string { return f.Text + atText(f.At) }
+func (f Flag) Sentence() string { return f.Text + atText(f) }
 
 // Celsius prints a temperature in K the way stations and findings do: "300 °C".
 func Celsius(kelvin float64) string { return celsius(kelvin) }

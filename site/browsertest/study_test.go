@@ -11,6 +11,10 @@ import (
 	"reflect"
 	"strings"
 	"testing"
+	"time"
+
+	"github.com/chromedp/chromedp"
+	"github.com/chromedp/chromedp/kb"
 
 	"brinkfield/physics/study"
 )
@@ -258,7 +262,7 @@ func TestBadInput(t *testing.T) {
 		if got := b.text("#findings-text"); got != before {
 			t.Errorf("%s changed the findings", name)
 		}
-		eval[any](b, `document.querySelector("#discard").click()`)
+		eval[any](b, `document.querySelector("#discard")?.click()`)
 	}
 	b.quiet()
 }
@@ -281,9 +285,15 @@ func TestFitByHand(t *testing.T) {
 	b.waitText("#fit", "held")
 	b.click(".held .tool")
 	b.wait(`!document.querySelector("#fit").textContent.includes("held")`)
-	eval[any](b, `document.querySelector("#plane .plot").dispatchEvent(new CustomEvent("plotpick", {bubbles: true, detail: {series: "measured", index: 3, x: 0, y: 0, shift: false}}))`)
+	// a real click on the point that stands highest in the complex plane
+	at := eval[[]float64](b, `(() => {
+		document.querySelector("#plane").scrollIntoView();
+		const all = [...document.querySelectorAll("#plane svg circle")].map((c) => c.getBoundingClientRect()).sort((a, b) => a.top - b.top);
+		return [all[0].left + all[0].width / 2, all[0].top + all[0].height / 2];
+	})()`)
+	b.do(chromedp.MouseClickXY(at[0], at[1]))
 	b.waitText("#omitted", "1 point is left out")
-	b.wait(`location.hash.includes("omit=5:4")`)
+	b.wait(`/omit=5:\d+/.test(location.hash)`)
 	b.click("#take-back")
 	b.waitText("#omitted", "Click a point")
 	eval[any](b, `(() => { const s = document.querySelector("#role2"); s.value = "boundary"; s.dispatchEvent(new Event("change", {bubbles: true})); })()`)
@@ -330,6 +340,13 @@ func TestUndo(t *testing.T) {
 	b.wait(`document.querySelector("#grain").value === "350 nm"`)
 	b.click("#redo")
 	b.wait(`location.hash === "#grain=500+nm"`)
+	// a blank survives the renders between two keys
+	b.fill("#title", "a")
+	for _, key := range []string{" ", "b"} {
+		b.keys("#title", key)
+		time.Sleep(100 * time.Millisecond)
+	}
+	b.wait(`document.querySelector("#title").value === "a b"`)
 	// dragging a name and the arrow keys vary the value
 	eval[any](b, `(() => {
 		const label = document.querySelector('label[data-drag="grain"]');
@@ -337,6 +354,7 @@ func TestUndo(t *testing.T) {
 		at("pointerdown", 100); at("pointermove", 100 - 160); at("pointerup", 100 - 160);
 	})()`)
 	b.wait(`document.querySelector("#grain").value === "184 nm"`)
-	b.keys("#grain", "\ue013") // arrow up
+	b.keys("#grain", kb.ArrowUp)
+	b.wait(`document.querySelector("#grain").value === "188 nm"`)
 	b.quiet()
 }

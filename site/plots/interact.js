@@ -88,7 +88,7 @@ export function listen(svg, el, spec, frame, theme, zoom) {
     const hit = nearest({ series: (spec.series ?? []).map((s) => (s.mark && s.mark !== 'line' ? s : { ...s, mark: 'band' })) }, frame, ...at(e), PICK);
     if (!hit) return;
     showTip(layer, spec, frame, theme, hit);
-    el.dispatchEvent(new CustomEvent('plotpick', { bubbles: true, detail: { series: hit.series, index: hit.index, x: hit.x, y: hit.y, shift: e.shiftKey } }));
+    el.dispatchEvent(new CustomEvent('plotpick', { bubbles: true, detail: { series: spec.series[hit.series].name ?? '', index: hit.index, x: hit.x, y: hit.y, shift: e.shiftKey } }));
   });
   svg.addEventListener('dblclick', () => zoom(null));
 }

@@ -95,8 +95,13 @@ const all = () => { for (const el of acts.keys()) if (el.isConnected) show(el); 
 export function start() {
   new MutationObserver(all).observe(document.documentElement, { attributes: true, attributeFilter: ['data-theme'] });
   dark?.addEventListener('change', all);
-  addEventListener('beforeprint', () => { printing = true; all(); });
-  addEventListener('afterprint', () => { printing = false; all(); });
+  const end = () => { if (printing) { printing = false; all(); } };
+  addEventListener('beforeprint', () => {
+    printing = true;
+    all();
+    setTimeout(end, 3000); // some browsers do not say when printing is over; the dialogue holds the clock
+  });
+  addEventListener('afterprint', end);
   addEventListener('keydown', (e) => {
     if (e.key !== 'Escape') return;
     for (const [el, act] of acts) if (act.view && el.matches(':hover, :focus-within')) zoom(el, null);

@@ -24,6 +24,7 @@ type App struct {
 	Result   *study.Result // the last good one; nil before the first
 	Station  string        // the station that is open
 	Message  string        // of the banner
+	Good     bool          // the message is good news
 	Work     Work
 	Preview  *Preview
 	Pasted   string // in the field for pasted spectra
@@ -63,17 +64,28 @@ func newApp(h Host) *App {
 func (a *App) openLink(fragment string) {
 	in, problems := study.Parse(fragment)
 	if len(problems) > 0 {
-		a.Message = "The link was read but for this: " + problems.Error()[len("study: inputs are not usable: "):]
+		a.problem("The link was read but for this: " + problems.Error()[len("study: inputs are not usable: "):])
 	}
 	a.set(in, "")
 }
 
 // Edit takes what is typed into a field.
 func (a *App) Edit(param, text string) {
-	if a.Typed.Get(param) == strings.TrimSpace(text) && a.Problems.At(param) == "" {
+	if a.Typed.Get(param) == text {
 		return
 	}
-	a.set(a.Typed.With(param, text), param)
+	in := a.Typed.With(param, text)
+	if other := map[string]string{"area": "diameter", "diameter": "area"}[param]; other != "" && strings.TrimSpace(text) != "" {
+		in = in.With(other, "").With(other+"_pm", "")
+	}
+	a.set(in, param)
+}
+
+// New begins an empty case.
+func (a *App) New() {
+	a.set(study.NewCase(), "")
+	a.Station = "specimen"
+	a.tell("A new case. Its specimen still holds the demo's values until you type over them; Undo brings the former case back.")
 }
 
 // set makes these the inputs. what names the edit; edits of one name in a row are
@@ -123,7 +135,7 @@ func (a *App) show(in study.Inputs) {
 func (a *App) compute(in study.Inputs) {
 	result, err := a.runner.Run(context.Background(), in, study.Options{})
 	if err != nil {
-		a.Message = plain(err)
+		a.problem(plain(err))
 		return
 	}
 	if a.Result == nil || a.Result.View.Spectrum != result.View.Spectrum {
@@ -149,7 +161,7 @@ func (a *App) askFits(in study.Inputs) {
 				return
 			}
 		}
-		a.Message = plain(err)
+		a.problem(plain(err))
 	})
 }
 
@@ -165,7 +177,7 @@ func (a *App) askIntervals(in study.Inputs) {
 			err = result.SetIntervals(ends)
 		}
 		if err != nil {
-			a.Message = plain(err)
+			a.problem(plain(err))
 			return
 		}
 		waiting := a.settled
@@ -189,7 +201,7 @@ func (a *App) progress(fraction float64, what string) {
 func (a *App) Cancel() {
 	a.calc.stop()
 	a.Work = Work{}
-	a.Message = "The calculation was cancelled; what is shown is the last good result. Edit a field to start again."
+	a.problem("The calculation was cancelled; what is shown is the last good result. Edit a field to start again.")
 }
 
 // Percent is how far the calculation is.
@@ -218,12 +230,34 @@ func (a *App) Busy() string {
 func (a *App) whenSettled(f func()) {
 	switch {
 	case len(a.Problems) > 0:
-		a.Message = "First mend the field: " + a.Problems[0].Param + ": " + a.Problems[0].Text
+		a.problem("First mend the field: " + a.Problems[0].Param + ": " + a.Problems[0].Text)
 	case a.Busy() == "true":
 		a.settled = append(a.settled, f)
 	default:
 		f()
 	}
+}
+
+// problem shows what went wrong.
+func (a *App) problem(text string) { a.Message, a.Good = text, false }
+
+// tell shows good news, which goes by itself.
+func (a *App) tell(format string, args ...any) {
+	text := fmt.Sprintf(format, args...)
+	a.Message, a.Good = text, true
+	a.Host.After(8*time.Second, func() {
+		if a.Message == text {
+			a.Message = ""
+		}
+	})
+}
+
+// BannerClass tells good news from a problem.
+func (a *App) BannerClass() string {
+	if a.Good {
+		return "banner notice"
+	}
+	return "banner"
 }
 
 // plain drops the package names from an error.
@@ -249,7 +283,7 @@ func (a *App) Save() {
 	a.whenSettled(func() {
 		data, err := a.Result.JSON()
 		if err != nil {
-			a.Message = plain(err)
+			a.problem(plain(err))
 			return
 		}
 		a.Host.Download(a.fileName(".json"), "application/json", data)
@@ -266,10 +300,10 @@ func (a *App) CopyLink() {
 	link := a.Host.Address() + "#" + a.Typed.Link()
 	a.Host.CopyText(link, func(err error) {
 		if err != nil {
-			a.Message = "The link could not be copied (" + err.Error() + "); copy it from the address bar."
+			a.problem("The link could not be copied (" + err.Error() + "); copy it from the address bar.")
 			return
 		}
-		a.Message = fmt.Sprintf("The link is copied (%d characters). It holds the inputs and the measured data and goes to no server.", len(link))
+		a.tell("The link is copied (%d characters). It holds the inputs and the measured data and goes to no server.", len(link))
 	})
 }
 
@@ -289,6 +323,19 @@ func (a *App) Print() {
 		a.Host.Print()
 		a.Host.After(printing, func() { a.Printing = false })
 	})
+}
+
+// Printed is the line at the head of a printed page: when, and how to come back.
+func (a *App) Printed() string {
+	if !a.Printing {
+		return ""
+	}
+	in := a.Typed.With("data", "")
+	text := "Printed " + time.Now().Format("2006-01-02 15:04") + ". Inputs: " + in.Link()
+	if a.Typed.Get("spectra") == "data" {
+		text += " (the measured data are in the saved case)"
+	}
+	return text + "."
 }
 
 // ToggleTheme switches between light and dark.

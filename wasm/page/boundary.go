@@ -121,12 +121,16 @@ func (c *Boundary) routes() (rows []Row) {
 	}
 	rows = []Row{value, uses}
 	for _, m := range c.App.Result.Moves {
+		change := "+" + strings.TrimPrefix(m.Change, "+")
+		if m.Stated {
+			change = m.Change
+		}
 		if m.Route != "short" { // the first route opens a row
 			last := &rows[len(rows)-1]
 			last.Cells = append(last.Cells, cell(shift(float64(m.Shift))))
 			continue
 		}
-		rows = append(rows, Row{Cells: []Cell{{HTML: pretty(m.Input + ", " + m.Symbol + " " + unbroken(m.Change)), Head: true}, cell(shift(float64(m.Shift)))}})
+		rows = append(rows, Row{Cells: []Cell{{HTML: pretty(m.Input + ", " + m.Symbol + " " + unbroken(change)), Head: true}, cell(shift(float64(m.Shift)))}})
 	}
 	return rows
 }

@@ -57,7 +57,7 @@ func (a *App) Brief() string {
 	}
 	parts := []string{a.Result.Headlines["boundary"]}
 	if n := len(a.Result.Flags); n > 0 {
-		parts = append(parts, fmt.Sprintf("%d flags", n))
+		parts = append(parts, fmt.Sprintf("%d %s", n, plural(n, "flag")))
 	}
 	return strings.Join(parts, " · ")
 }

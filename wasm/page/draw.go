@@ -70,7 +70,7 @@ func (a *App) sectionSpec() sectionSpec {
 		DebyeText: "λ_D = " + unbroken(quantity.Format(v.Debye, quantity.Length, 2))}
 	if v.Missing != "" {
 		s.Note = v.Missing
-		s.X, s.Potential = nums{0, v.Debye * 1e10}, nums{0, 0}
+		s.X, s.Potential = nums{0, v.Debye * 1e10}, nums{0, 0} // ten Debye lengths
 		return s
 	}
 	end := 10 * v.Debye

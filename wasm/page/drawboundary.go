@@ -13,13 +13,13 @@ func (a *App) arrheniusSpec() *chartSpec {
 	spec := &chartSpec{Title: "Conductivity", Sub: "bars: 95 %", Height: 320, X: axisSpec{Label: "1000/T", Unit: "K⁻¹", Top: &topSpec{"celsius"}},
 		Y: axisSpec{Label: "σT", Unit: "S K m⁻¹", Scale: "log"}, Series: []seriesSpec{}}
 	for _, s := range []struct {
-		id, name, role string
-		line           transport.Arrhenius
-		below          bool
+		id, name, role  string
+		line            transport.Arrhenius
+		below, straight bool
 	}{
-		{"sigma_bulk", "interior", "interior", a.Result.Energies.Bulk, false},
-		{"sigma_total", "total", "total", a.Result.Energies.Total, false},
-		{"sigma_boundary", "boundary, specific", "boundary", a.Result.Energies.Boundary, true},
+		{"sigma_bulk", "interior", "interior", a.Result.Energies.Bulk, false, true},
+		{"sigma_total", "total", "total", a.Result.Energies.Total, true, false},
+		{"sigma_boundary", "boundary, specific", "boundary", a.Result.Energies.Boundary, true, true},
 	} {
 		points := seriesSpec{Name: s.name, Role: s.role, Mark: "errorbars", Legend: ptr(false)}
 		for _, n := range a.Result.Series(s.id) {
@@ -33,14 +33,17 @@ func (a *App) arrheniusSpec() *chartSpec {
 		if len(points.X) == 0 {
 			continue
 		}
-		if s.line.Points > 0 {
-			text := s.name + " " + unbroken(quantity.FormatIn(s.line.Energy, quantity.Energy, "eV", 3))
-			line := seriesSpec{Name: s.name, Role: s.role, Mark: "line", Legend: ptr(false), Label: mark{At: len(points.X) / 2, Text: text, Below: s.below}}
+		// Lines lie farthest apart where it is coldest: the label stands there.
+		line := seriesSpec{Name: s.name, Role: s.role, Mark: "line", Legend: ptr(false), Label: mark{At: min(1, len(points.X)-1), Text: s.name, Below: s.below}}
+		if s.straight && s.line.Points > 0 {
+			line.Label = mark{At: min(1, len(points.X)-1), Text: s.name + " " + unbroken(quantity.FormatIn(s.line.Energy, quantity.Energy, "eV", 3)), Below: s.below}
 			for _, x := range points.X {
 				line.X, line.Y = append(line.X, x), append(line.Y, s.line.At(1000/x)*1000/x)
 			}
-			spec.Series = append(spec.Series, line)
+		} else { // the total is no straight line: two processes share it
+			line.X, line.Y = points.X, points.Y
 		}
+		spec.Series = append(spec.Series, line)
 		spec.Series = append(spec.Series, points)
 	}
 	return spec

@@ -57,3 +57,24 @@ func (c *Field) drag() string {
 	}
 	return ""
 }
+
+// source says where the value comes from.
+func (c *Field) source() string {
+	switch {
+	case c.understood() == "":
+		return ""
+	case c.App.Typed.Borrowed(c.Param):
+		return "demo value, not yet yours"
+	}
+	return "entered"
+}
+
+func (c *Field) sourceClass() string {
+	switch c.source() {
+	case "":
+		return ""
+	case "entered":
+		return "source entered"
+	}
+	return "source borrowed"
+}

@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"brinkfield/physics/impedance"
+	"brinkfield/physics/quantity"
 	"brinkfield/physics/study"
 )
 
@@ -14,6 +15,46 @@ type FilePreview struct {
 	File  *PreviewFile
 	Index int
 }
+
+// summary is the file in one line.
+func (c *FilePreview) summary() string {
+	r := c.File.Reading
+	if c.File.Err != "" {
+		return "not read"
+	}
+	var parts []string
+	switch {
+	case r.TemperatureMissing:
+		parts = append(parts, "no temperature")
+	case len(r.Groups) == 1:
+		parts = append(parts, study.Celsius(r.Groups[0].T))
+	default:
+		parts = append(parts, fmt.Sprintf("%d temperatures", len(r.Groups)))
+	}
+	points := 0
+	for _, s := range r.Spectra {
+		points += len(s.Points)
+	}
+	parts = append(parts, fmt.Sprintf("%d points", points))
+	for _, col := range r.Columns {
+		if col.Quantity != impedance.Ignored {
+			parts = append(parts, strings.TrimSpace(col.Quantity.String()+" "+quantity.PrettyUnit(col.Unit)))
+		}
+	}
+	if n := len(r.Skipped); n > 0 {
+		parts = append(parts, fmt.Sprintf("%d %s left out", n, plural(n, "row")))
+	}
+	return strings.Join(parts, " · ")
+}
+
+// open shows the whole of a file that needs a person, of a file alone, or of one
+// that a person opened.
+func (c *FilePreview) open() bool {
+	whole := c.File.Err != "" || c.File.Reading.TemperatureMissing || len(c.App.Preview.Files) == 1
+	return whole != c.App.Opened(c.id("file"))
+}
+
+func (c *FilePreview) toggle() { c.App.Toggle(c.id("file")) }
 
 func (c *FilePreview) understood() []string {
 	if c.File.Err != "" {

@@ -1,7 +1,6 @@
 package page
 
 import (
-	"fmt"
 	"strings"
 
 	"brinkfield/physics/impedance"
@@ -35,7 +34,7 @@ func (a *App) PickSpectra() {
 // ReadPasted takes the text of the paste field.
 func (a *App) ReadPasted() {
 	if strings.TrimSpace(a.Pasted) == "" {
-		a.Message = "The field for pasted spectra is empty; expected lines of frequency and impedance."
+		a.problem("The field for pasted spectra is empty; expected lines of frequency and impedance.")
 		return
 	}
 	a.takeText(a.Pasted)
@@ -58,7 +57,7 @@ func (a *App) takeFiles(files []browser.File) {
 	for _, f := range files {
 		switch {
 		case f.Err != nil:
-			a.Message = f.Name + ": " + plain(f.Err)
+			a.problem(f.Name + ": " + plain(f.Err))
 			return
 		case study.IsCase(f.Data):
 			a.openCase(f)
@@ -78,11 +77,11 @@ func (a *App) takeFiles(files []browser.File) {
 func (a *App) openCase(f browser.File) {
 	in, err := study.Open(f.Data)
 	if err != nil {
-		a.Message = f.Name + ": " + plain(err)
+		a.problem(f.Name + ": " + plain(err))
 		return
 	}
 	a.Preview = nil
-	a.Message = f.Name + " is open. Undo takes you back to the former case."
+	a.tell("%s is open. Undo takes you back to the former case.", f.Name)
 	a.set(in, "")
 }
 
@@ -210,7 +209,7 @@ func (a *App) Drop(i int) {
 // Accept makes the previewed spectra those of the case; add keeps the present ones.
 func (a *App) Accept(add bool) {
 	if why := a.Preview.Ready(); why != "" {
-		a.Message = why + "."
+		a.problem(why + ".")
 		return
 	}
 	var readings []impedance.Reading
@@ -218,23 +217,40 @@ func (a *App) Accept(add bool) {
 		readings = append(readings, f.Reading)
 	}
 	if add {
-		readings = append(readings, impedance.Reading{File: "this case", Spectra: a.Typed.Spectra()})
+		present := impedance.Reading{File: "this case"}
+		for _, s := range a.Typed.Spectra() {
+			s.Source = "this case"
+			present.Spectra = append(present.Spectra, s)
+		}
+		readings = append(readings, present)
 	}
 	all, notes, err := impedance.Combine(readings...)
 	if err != nil {
-		a.Message = plain(err)
+		a.problem(plain(err))
 		return
 	}
 	in, err := a.Typed.WithoutControls().WithSpectra(all)
 	if err != nil {
-		a.Message = plain(err)
+		a.problem(plain(err))
 		return
 	}
+	if _, titled := in.Text["title"]; !titled {
+		in = in.With("title", nameOf(a.Preview.Files[0].Name))
+	}
 	a.Preview, a.Pasted, a.Message = nil, "", ""
+	a.Host.Focus("spectra")
 	for _, n := range notes {
-		a.Message = n.Text
+		a.tell("%s", n.Text)
 	}
 	a.set(in, "")
+}
+
+// nameOf is a file's name as a title.
+func nameOf(file string) string {
+	if i := strings.LastIndexByte(file, '.'); i > 0 {
+		file = file[:i]
+	}
+	return file
 }
 
 // Discard forgets the preview.
@@ -254,11 +270,11 @@ func (a *App) RemoveSpectrum(i int) {
 	controls := a.Typed.ControlsOf()
 	in, err := a.Typed.WithSpectra(rest)
 	if err != nil {
-		a.Message = plain(err)
+		a.problem(plain(err))
 		return
 	}
 	a.set(in.WithControls(append(controls[:i:i], controls[i+1:]...)), "")
-	a.Message = fmt.Sprintf("%s is taken out; Undo brings it back.", study.Celsius(all[i].T))
+	a.tell("%s is taken out; Undo brings it back.", study.Celsius(all[i].T))
 }
 
 // pick leaves a measured point out of the fit, or takes it back.

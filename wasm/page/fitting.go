@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"brinkfield/physics/impedance"
+	"brinkfield/physics/quantity"
 	"brinkfield/physics/study"
 )
 
@@ -64,7 +65,7 @@ func (a *App) ArcsChosen() string {
 	return "auto"
 }
 
-// SetRole assigns an arc of the spectrum shown; "by capacitance" gives it back to the rule.
+// SetRole assigns an arc of the spectrum shown; "auto" gives it back to the rule.
 func (a *App) SetRole(arc int, choice string) {
 	role := map[string]impedance.Role{"interior": impedance.Interior, "boundary": impedance.Boundary, "contact": impedance.Contact}[choice]
 	a.change(a.Spectrum(), func(c *study.Controls) {
@@ -89,7 +90,7 @@ func (a *App) RoleChosen(arc int) string {
 	if r, ok := a.control().Assign[arc]; ok {
 		return r.String()
 	}
-	return "by capacitance"
+	return "auto"
 }
 
 // ToggleOmit leaves a point of a spectrum out of the fit or takes it back.
@@ -141,12 +142,12 @@ type HeldValue struct{ Name, Value string }
 // Hold holds a parameter of the spectrum shown at its fitted value, or at the
 // text given; an empty name lets nothing change.
 func (a *App) Hold(name, text string) {
-	v, err := strconv.ParseFloat(strings.Replace(strings.TrimSpace(text), ",", ".", 1), 64)
-	if text == "" {
-		v, err = a.fitted(name), nil
+	v, err := a.fitted(name), error(nil)
+	if strings.TrimSpace(text) != "" {
+		v, err = heldValue(name, text)
 	}
 	if err != nil {
-		a.Message = "The held value is not a number (" + text + "); expected one in SI units such as 0.95 or 7.2e4."
+		a.problem("The value to hold is not usable: " + plain(err) + ".")
 		return
 	}
 	a.change(a.Spectrum(), func(c *study.Controls) {
@@ -158,6 +159,31 @@ func (a *App) Hold(name, text string) {
 		c.Hold = hold
 	})
 }
+
+// heldValue reads a value to hold in the unit of its parameter; a bare number is SI.
+func heldValue(name, text string) (float64, error) {
+	kind := quantity.Number
+	switch name[strings.IndexByte(name, '.')+1:] {
+	case "R":
+		kind = quantity.Resistance
+	case "L":
+		kind = quantity.Inductance
+	}
+	if v, err := quantity.Parse(text, quantity.Number); err == nil {
+		return v.SI, nil
+	}
+	v, err := quantity.Parse(text, kind)
+	return v.SI, err
+}
+
+// holdNames says the parameters in words.
+var holdNames = func() map[string]string {
+	m := map[string]string{"lead.R": "lead resistance", "lead.L": "lead inductance"}
+	for _, role := range []string{"interior", "boundary", "contact"} {
+		m[role+".R"], m[role+".Q"], m[role+".n"] = role+" resistance", role+" Q", role+" exponent n"
+	}
+	return m
+}()
 
 // Release lets a held parameter go free.
 func (a *App) Release(name string) {

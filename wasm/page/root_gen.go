@@ -41,8 +41,9 @@ func (c *Root) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 		}
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}
 		vgparent.AppendChild(vgn)
-		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "banner"}, vugu.VGAttribute{Namespace: "", Key: "role", Val: "alert"}}}
+		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "role", Val: "status"}}}
 		vgparent.AppendChild(vgn)
+		vgn.AddAttrInterface("class", c.App.BannerClass())
 		{
 			b, err := vjson.Marshal(c.App.Message == "")
 			if err != nil {
@@ -70,6 +71,11 @@ func (c *Root) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				vgparent.AppendChild(vgn)
 			}
 		}
+		vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}
+		vgparent.AppendChild(vgn)
+		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "p", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "print-only"}}}
+		vgparent.AppendChild(vgn)
+		vgn.SetInnerHTML(c.App.Printed())
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n "}
 		vgparent.AppendChild(vgn)
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "main", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "page"}}}

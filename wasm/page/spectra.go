@@ -22,7 +22,7 @@ type Spectra struct {
 
 var arcOptions = []study.Option{{Key: "auto", Label: "auto"}, {Key: "1", Label: "1"}, {Key: "2", Label: "2"}, {Key: "3", Label: "3"}}
 
-var roleOptions = []string{"by capacitance", "interior", "boundary", "contact"}
+var roleOptions = []string{"auto", "interior", "boundary", "contact"}
 
 // arcs are the arcs of the spectrum shown.
 func (c *Spectra) arcs() []impedance.FittedArc {
@@ -119,17 +119,13 @@ func (c *Spectra) hold() {
 // fitTable is the fit of the spectrum shown.
 func (c *Spectra) fitRows() (rows []Row) {
 	for i, a := range c.arcs() {
-		eps := ""
-		if a.RelativeEpsilon > 0 && a.Role == impedance.Interior {
-			eps = quantity.FormatNumber(a.RelativeEpsilon, 3)
-		}
-		rows = append(rows, Row{Cells: []Cell{rowHead(fmt.Sprint(i + 1)), {HTML: vugu.HTML(html.EscapeString(a.Role.String())), Class: "role"},
+		rows = append(rows, Row{Cells: []Cell{rowHead(fmt.Sprint(i + 1)), {HTML: vugu.HTML(html.EscapeString(a.Role.String())), Class: "text"},
 			estimate(a.R, quantity.Resistance), estimate(a.C, quantity.Capacitance), estimate(a.N, quantity.Number),
-			cell(quantity.Format(a.Arc.Peak(), quantity.Frequency, 2)), cell(eps)}})
+			cell(quantity.Format(a.Arc.Peak(), quantity.Frequency, 2))}})
 	}
 	if e := c.App.Evidence(); e != nil && e.Fit != nil {
-		rows = append(rows, Row{Cells: []Cell{rowHead("lead"), cell(""), estimate(e.Fit.LeadR, quantity.Resistance), {}, {}, {}, {}}})
-		rows = append(rows, Row{Cells: []Cell{rowHead("lead"), cell("inductance"), estimate(e.Fit.LeadL, quantity.Inductance), {}, {}, {}, {}}})
+		rows = append(rows, Row{Cells: []Cell{rowHead("lead"), wordy("resistance"), estimate(e.Fit.LeadR, quantity.Resistance), {}, {}, {}}})
+		rows = append(rows, Row{Cells: []Cell{rowHead("lead"), wordy("inductance"), estimate(e.Fit.LeadL, quantity.Inductance), {}, {}, {}}})
 	}
 	return rows
 }
@@ -174,12 +170,25 @@ func (c *Spectra) verdictText() string  { _, _, text := c.verdict(); return text
 
 func percentText(x float64) string { return quantity.FormatNumber(100*x, 2) + "\u00a0%" }
 
-// used says how the previewed spectra would be taken.
+// used says what taking the previewed spectra does.
 func (c *Spectra) used() string {
-	if n := c.App.Preview.Count(); n != 1 {
-		return fmt.Sprintf("Use these %d spectra", n)
+	n := c.App.Preview.Count()
+	what := fmt.Sprintf("these %d spectra", n)
+	if n == 1 {
+		what = "this spectrum"
 	}
-	return "Use this spectrum"
+	if c.canAdd() {
+		return fmt.Sprintf("Replace the present %d by %s", len(c.App.Typed.Spectra()), what)
+	}
+	return "Use " + what
+}
+
+// acceptClass makes the safe button the main one.
+func (c *Spectra) acceptClass() string {
+	if c.canAdd() {
+		return "btn"
+	}
+	return "btn main"
 }
 
 func (c *Spectra) files() []*PreviewFile {

@@ -17,7 +17,7 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 	var vgiterkey interface{}
 	_ = vgiterkey
 	var vgn *vugu.VGNode
-	vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "section", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "station"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "spectra"}, vugu.VGAttribute{Namespace: "", Key: "aria-labelledby", Val: "h-spectra"}}}
+	vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "section", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "station"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "spectra"}, vugu.VGAttribute{Namespace: "", Key: "tabindex", Val: "-1"}, vugu.VGAttribute{Namespace: "", Key: "aria-labelledby", Val: "h-spectra"}}}
 	vgout.Out = append(vgout.Out, vgn) // root for output
 	{
 		b, err := vjson.Marshal(!c.App.Shows("spectra"))
@@ -268,13 +268,14 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 						vgcomp.Class = "select"
 						vgcomp.ID = "hold-name"
 						vgcomp.Label = "Parameter to hold"
+						vgcomp.Names = holdNames
 						vgcomp.Options = c.App.Holdable()
 						vgcomp.Pick = c.setHeld
 						vgout.Components = append(vgout.Components, vgcomp)
 						vgn = &vugu.VGNode{Component: vgcomp}
 						vgparent.AppendChild(vgn)
 					}
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "input", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "select"}, vugu.VGAttribute{Namespace: "", Key: "size", Val: "9"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "hold-value"}, vugu.VGAttribute{Namespace: "", Key: "aria-label", Val: "Value to hold it at, SI"}, vugu.VGAttribute{Namespace: "", Key: "placeholder", Val: "as fitted"}}}
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "input", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "select"}, vugu.VGAttribute{Namespace: "", Key: "size", Val: "9"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "hold-value"}, vugu.VGAttribute{Namespace: "", Key: "aria-label", Val: "Value to hold it at"}, vugu.VGAttribute{Namespace: "", Key: "placeholder", Val: "as fitted"}}}
 					vgparent.AppendChild(vgn)
 					{
 						b, err := vjson.Marshal(c.heldText)
@@ -323,7 +324,7 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 							_ = vgparent
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "span", Attr: []vugu.VGAttribute(nil)}
 							vgparent.AppendChild(vgn)
-							vgn.SetInnerHTML(h.Name + " = " + h.Value)
+							vgn.SetInnerHTML(holdNames[h.Name] + " = " + h.Value)
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 							vgparent.AppendChild(vgn)
 							vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "tool"}}}
@@ -440,6 +441,73 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				_ = vgparent
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
 				vgparent.AppendChild(vgn)
+				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "btn-row"}}}
+				vgparent.AppendChild(vgn)
+				{
+					vgparent := vgn
+					_ = vgparent
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "btn main"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "accept-add"}}}
+					vgparent.AppendChild(vgn)
+					{
+						b, err := vjson.Marshal(c.ready() != "")
+						if err != nil {
+							panic(err)
+						}
+						vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "disabled", JSONVal: vjson.RawMessage(b)})
+					}
+					{
+						b, err := vjson.Marshal(!c.canAdd())
+						if err != nil {
+							panic(err)
+						}
+						vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "hidden", JSONVal: vjson.RawMessage(b)})
+					}
+					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
+						EventType: "click",
+						Func:      func(event vugu.DOMEvent) { c.App.Accept(true) },
+						// TODO: implement capture, etc. mostly need to decide syntax
+					})
+					{
+						vgparent := vgn
+						_ = vgparent
+						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "Add to the present ones"}
+						vgparent.AppendChild(vgn)
+					}
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "accept"}}}
+					vgparent.AppendChild(vgn)
+					vgn.AddAttrInterface("class", c.acceptClass())
+					{
+						b, err := vjson.Marshal(c.ready() != "")
+						if err != nil {
+							panic(err)
+						}
+						vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "disabled", JSONVal: vjson.RawMessage(b)})
+					}
+					vgn.SetInnerHTML(c.useText())
+					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
+						EventType: "click",
+						Func:      func(event vugu.DOMEvent) { c.App.Accept(false) },
+						// TODO: implement capture, etc. mostly need to decide syntax
+					})
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "btn"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "discard"}}}
+					vgparent.AppendChild(vgn)
+					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
+						EventType: "click",
+						Func:      func(event vugu.DOMEvent) { c.App.Discard() },
+						// TODO: implement capture, etc. mostly need to decide syntax
+					})
+					{
+						vgparent := vgn
+						_ = vgparent
+						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "Discard"}
+						vgparent.AppendChild(vgn)
+					}
+					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "span", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "note"}}}
+					vgparent.AppendChild(vgn)
+					vgn.SetInnerHTML(c.ready())
+				}
+				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
+				vgparent.AppendChild(vgn)
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "files"}}}
 				vgparent.AppendChild(vgn)
 				{
@@ -474,72 +542,6 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 					}
 					vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: " "}
 					vgparent.AppendChild(vgn)
-				}
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n   "}
-				vgparent.AppendChild(vgn)
-				vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "div", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "btn-row"}}}
-				vgparent.AppendChild(vgn)
-				{
-					vgparent := vgn
-					_ = vgparent
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "btn main"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "accept"}}}
-					vgparent.AppendChild(vgn)
-					{
-						b, err := vjson.Marshal(c.ready() != "")
-						if err != nil {
-							panic(err)
-						}
-						vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "disabled", JSONVal: vjson.RawMessage(b)})
-					}
-					vgn.SetInnerHTML(c.useText())
-					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-						EventType: "click",
-						Func:      func(event vugu.DOMEvent) { c.App.Accept(false) },
-						// TODO: implement capture, etc. mostly need to decide syntax
-					})
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "btn"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "accept-add"}}}
-					vgparent.AppendChild(vgn)
-					{
-						b, err := vjson.Marshal(c.ready() != "")
-						if err != nil {
-							panic(err)
-						}
-						vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "disabled", JSONVal: vjson.RawMessage(b)})
-					}
-					{
-						b, err := vjson.Marshal(!c.canAdd())
-						if err != nil {
-							panic(err)
-						}
-						vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "hidden", JSONVal: vjson.RawMessage(b)})
-					}
-					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-						EventType: "click",
-						Func:      func(event vugu.DOMEvent) { c.App.Accept(true) },
-						// TODO: implement capture, etc. mostly need to decide syntax
-					})
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "Add to the present ones"}
-						vgparent.AppendChild(vgn)
-					}
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "button", Attr: []vugu.VGAttribute{{Namespace: "", Key: "type", Val: "button"}, vugu.VGAttribute{Namespace: "", Key: "class", Val: "btn"}, vugu.VGAttribute{Namespace: "", Key: "id", Val: "discard"}}}
-					vgparent.AppendChild(vgn)
-					vgn.DOMEventHandlerSpecList = append(vgn.DOMEventHandlerSpecList, vugu.DOMEventHandlerSpec{
-						EventType: "click",
-						Func:      func(event vugu.DOMEvent) { c.App.Discard() },
-						// TODO: implement capture, etc. mostly need to decide syntax
-					})
-					{
-						vgparent := vgn
-						_ = vgparent
-						vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "Discard"}
-						vgparent.AppendChild(vgn)
-					}
-					vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "span", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "note"}}}
-					vgparent.AppendChild(vgn)
-					vgn.SetInnerHTML(c.ready())
 				}
 				vgn = &vugu.VGNode{Type: vugu.VGNodeType(1), Data: "\n  "}
 				vgparent.AppendChild(vgn)
@@ -594,7 +596,7 @@ func (c *Spectra) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.Caption = "Arcs at " + c.where()
-				vgcomp.Head = heads("arc", "|role", "R", "C", "n", "top at", "ε_r")
+				vgcomp.Head = heads("arc", "|role", "R", "C", "n", "peak frequency")
 				vgcomp.ID = "fit"
 				vgcomp.Rows = c.fitRows()
 				vgcomp.Sub = "± is the 95 % half-width"

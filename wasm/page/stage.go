@@ -27,6 +27,9 @@ func (a *App) chips() (list []chip) {
 				one.Class = "chip wrong"
 			}
 		}
+		for n, twin := 2, i-1; twin >= 0 && list[twin].At == one.At; n, twin = n+1, twin-1 {
+			one.Text = unbroken(fmt.Sprintf("%s (%d)", study.Celsius(s.T), n))
+		}
 		list = append(list, one)
 	}
 	return list
