@@ -144,15 +144,14 @@ func NumberTable(r *Result) string {
 // cell escapes what would end a Markdown cell.
 func cell(text string) string { return strings.ReplaceAll(text, "|", "\\|") }
 
-// PlusText prints the ± of a field's reading in the unit of the reading.
+// PlusText prints the ± of a field in the unit it reads best in.
 func PlusText(f Field, u Understood) string {
-	switch f.Kind.SIUnit {
-	case "":
-		return q.FormatNumber(u.Plus, 3)
-	case "J":
-		return q.FormatIn(u.Plus, f.Kind, "eV", 3)
+	kind := f.Kind
+	if kind.SIUnit == "" { // fractions are shown as they are understood
+		return q.FormatShort(u.Plus)
 	}
-	return q.FormatNumber(u.Plus, 3) + " " + q.PrettyUnit(f.Kind.SIUnit)
+	unit := q.DisplayUnit(u.Plus, kind)
+	return q.FormatShort(q.Convert(u.Plus, kind, unit)) + " " + q.PrettyUnit(unit)
 }
 
 // StationOf is the station of a parameter or of a ± parameter.

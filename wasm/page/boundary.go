@@ -117,10 +117,13 @@ func (c *Boundary) routes() (rows []Row) {
 	value, uses := Row{Class: "current", Cells: []Cell{rowHead("Φ₀")}}, Row{Cells: []Cell{rowHead("uses")}}
 	for _, r := range routeList {
 		value.Cells = append(value.Cells, numberCell(c.App.at(r.id)))
-		uses.Cells = append(uses.Cells, Cell{HTML: pretty(r.uses)})
+		uses.Cells = append(uses.Cells, Cell{HTML: pretty(r.uses), Class: "wrap"})
 	}
 	rows = []Row{value, uses}
 	for _, m := range c.App.Result.Moves {
+		if m.Stated && !c.moves(m.Input) {
+			continue
+		}
 		change := "+" + strings.TrimPrefix(m.Change, "+")
 		if m.Stated {
 			change = m.Change
@@ -133,6 +136,16 @@ func (c *Boundary) routes() (rows []Row) {
 		rows = append(rows, Row{Cells: []Cell{{HTML: pretty(m.Input + ", " + m.Symbol + " " + unbroken(change)), Head: true}, cell(shift(float64(m.Shift)))}})
 	}
 	return rows
+}
+
+// moves reports whether a stated ± moves any route.
+func (c *Boundary) moves(input string) bool {
+	for _, m := range c.App.Result.Moves {
+		if m.Stated && m.Input == input && math.Abs(float64(m.Shift)) > 5e-6 {
+			return true
+		}
+	}
+	return false
 }
 
 // shift prints a movement of the barrier in mV, 0 where the route does not use the input.
