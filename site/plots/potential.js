@@ -10,7 +10,7 @@ const PAD = 9; // px kept free above and below the curve
 function voltScale(spec, at) {
   const all = [...at.right.potential, ...at.left.potential, spec.phi0_V ?? 0, 0].filter(Number.isFinite);
   let lo = Math.min(...all), hi = Math.max(...all);
-  if (hi - lo < 1e-4) hi = lo + 0.01; // a flat layer is drawn flat, not as magnified noise
+  if (hi - lo < 1e-4) hi = lo + 0.1; // a flat layer is drawn flat, not as magnified noise
   const [top, bottom] = at.potential;
   return { lo, hi, y: (v) => bottom - PAD - ((v - lo) / (hi - lo)) * (bottom - top - 2 * PAD) };
 }

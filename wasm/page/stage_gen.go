@@ -32,6 +32,13 @@ func (c *Stage) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 		vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "fieldset", Attr: []vugu.VGAttribute{{Namespace: "", Key: "class", Val: "temps"}}}
 		vgparent.AppendChild(vgn)
 		{
+			b, err := vjson.Marshal(len(c.App.chips()) == 0)
+			if err != nil {
+				panic(err)
+			}
+			vgn.Prop = append(vgn.Prop, vugu.VGProperty{Key: "hidden", JSONVal: vjson.RawMessage(b)})
+		}
+		{
 			vgparent := vgn
 			_ = vgparent
 			vgn = &vugu.VGNode{Type: vugu.VGNodeType(3), Namespace: "", Data: "legend", Attr: []vugu.VGAttribute(nil)}
