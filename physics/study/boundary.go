@@ -223,7 +223,7 @@ func (r *run) moves() (list []Move) {
 		apply                 func(s *specimen, p []float64, f *impedance.Fit)
 	}
 	i, b := fit.Index(impedance.Interior), fit.Index(impedance.Boundary)
-	tenth, all := "+10 %", []int{cPhiShort, cPhiDepletion, cPhiFull}
+	tenth, all := "+10 %", []int{cPhiFull, cPhiDepletion, cPhiShort}
 	scaleC := func(p []float64, k int, by float64) { // C at constant R and n
 		p[impedance.ParamQ(k)] += p[impedance.ParamN(k)] * math.Log(by)
 	}
@@ -264,7 +264,7 @@ func (r *run) statedMoves(base *row, fit *impedance.Fit) (list []Move) {
 			return 0
 		})
 		moved := readRow(s, fit, fit.Params, base.v[cPhiFull], 0)
-		for _, c := range []int{cPhiShort, cPhiDepletion, cPhiFull} {
+		for _, c := range []int{cPhiFull, cPhiDepletion, cPhiShort} {
 			list = append(list, Move{Route: routeKeys[c], Input: f.Label, Symbol: f.Symbol, Change: "± " + PlusText(f, u), Shift: Float(moved.v[c] - base.v[c]), Stated: true})
 		}
 	}

@@ -17,7 +17,7 @@ const (
 	overlapWidth      = 4.0  // grain over depleted width of one side
 	permittivityLimit = 0.1  // relative difference of arc and entered permittivity
 	sideWallLimit     = 0.02
-	exponentLimit     = 0.9
+	exponentLimit     = 0.97
 	misfit            = 3.0 // scatter about the fit over the noise of the data
 
 	// arcAllowance is how far the capacitance read from a depletion layer's arc may
@@ -49,13 +49,13 @@ func (r *run) raise(f Flag, kelvin float64) {
 
 // raiseFlags says when not to believe the result, each with its number.
 func (r *run) raiseFlags() {
+	r.flagBorrowed()
 	for i, e := range r.evidence {
 		r.flagSpectrum(e)
 		if e.Fit != nil {
 			r.flagRow(i)
 		}
 	}
-	r.flagBorrowed()
 	r.flagLayer()
 	for i := range r.result.Numbers {
 		r.result.Numbers[i].Flags = r.flagsOf(r.result.Numbers[i])

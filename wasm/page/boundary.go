@@ -72,10 +72,10 @@ func (c *Boundary) rows() (rows []Row) {
 		if i == c.App.Spectrum() {
 			row.Class = "current"
 		}
-		for _, id := range []string{"r_bulk", "r_excess", "c_boundary", "n_boundary", "ratio"} {
+		row.Cells = append(row.Cells, barrierCell(get(phi), e.Refused))
+		for _, id := range []string{"ratio", "r_bulk", "r_excess", "c_boundary", "n_boundary"} {
 			row.Cells = append(row.Cells, numberCell(get(id)))
 		}
-		row.Cells = append(row.Cells, barrierCell(get(phi), e.Refused))
 		if get(phi).Missing() {
 			row.Class = strings.TrimSpace(row.Class + " out")
 		}
@@ -103,9 +103,9 @@ func numberCell(n study.Number) Cell {
 
 // routeList are the three routes, with what each uses.
 var routeList = []struct{ key, id, name, uses string }{
-	{"short", "phi0_short", "short form", "R, C, T, z"},
-	{"depletion", "phi0_depletion", "exact depletion", "R, C, T, z"},
 	{"full", "phi0_full", "full layer", "R ratio, d, ε_r, c∞, T, z"},
+	{"depletion", "phi0_depletion", "exact depletion", "R, C, T, z"},
+	{"short", "phi0_short", "short form", "R, C, T, z"},
 }
 
 // routes compares the three routes: barrier, what it uses, and how far it moves
@@ -128,7 +128,7 @@ func (c *Boundary) routes() (rows []Row) {
 		if m.Stated {
 			change = m.Change
 		}
-		if m.Route != "short" { // the first route opens a row
+		if m.Route != "full" { // the first route opens a row
 			last := &rows[len(rows)-1]
 			last.Cells = append(last.Cells, cell(shift(float64(m.Shift))))
 			continue

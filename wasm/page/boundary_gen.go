@@ -170,7 +170,7 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.Caption = "All temperatures"
-				vgcomp.Head = heads("T", "R_bulk", "R_boundary", "C_gb", "n", "ratio", "|Φ₀, 95 %")
+				vgcomp.Head = heads("T", "|Φ₀, 95 %", "ratio", "R_bulk", "R_boundary", "C_gb", "n")
 				vgcomp.ID = "temperatures"
 				vgcomp.Rows = c.rows()
 				vgcomp.Sub = "after the dielectric width is taken out"
@@ -191,7 +191,7 @@ func (c *Boundary) Build(vgin *vugu.BuildIn) (vgout *vugu.BuildOut) {
 				}
 				vgin.BuildEnv.UseComponent(vgcompKey, vgcomp) // ensure we can use this in the cache next time around
 				vgcomp.Caption = "Three routes to the barrier"
-				vgcomp.Head = heads("", "short form", "exact depletion", "full layer")
+				vgcomp.Head = heads("", "full layer", "exact depletion", "short form")
 				vgcomp.ID = "routes"
 				vgcomp.Rows = c.routes()
 				vgcomp.Sub = "at " + c.where() + ", and how far each moves with each input"
