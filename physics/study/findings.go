@@ -48,7 +48,11 @@ func (r *run) findBarrier() string {
 	if shown == nil {
 		return ""
 	}
-	text := fmt.Sprintf("Barrier Φ₀ = %s at %s by the %s", withInterval(*shown), celsius(float64(shown.Temperature)), FieldOf("route").optionLabel(r.in.Get("route")))
+	start := "Barrier"
+	if r.hasWidths() && !r.result.WidthsAgree(r.result.View.Spectrum) {
+		start = "Read as a charged barrier (see the widths below),"
+	}
+	text := start + fmt.Sprintf(" Φ₀ = %s at %s by the %s", withInterval(*shown), celsius(float64(shown.Temperature)), FieldOf("route").optionLabel(r.in.Get("route")))
 	if s := r.result.Number("phi0_slope", 0); s != nil && !s.Missing() {
 		text += fmt.Sprintf("; it %s by %s mV per kelvin over the range", map[bool]string{true: "falls", false: "rises"}[s.Value < 0], q.FormatNumber(math.Abs(1e3*float64(s.Value)), 2))
 	}
@@ -80,8 +84,25 @@ func (r *run) findWidths() string {
 		return fmt.Sprintf("The two roads to the width agree, %s: what a charged boundary with these carriers shows.", roads)
 	}
 	share := r.atView("carriers_closing_share")
+	if share == nil {
+		return fmt.Sprintf("The two roads to the width disagree, %s.", roads)
+	}
+	if share.Value < leastShare || share.Value > mostShare {
+		return fmt.Sprintf("The two roads to the width disagree, %s: no plausible carrier density closes them (%s of the nominal one would). "+
+			"That speaks against a charged barrier and for a film or poor contact between grains, or for wrong inputs: grain size, permittivity, area.", roads, shareText(*share))
+	}
 	return fmt.Sprintf("The two roads to the width disagree, %s: full dopant charge does not fit. Carriers of %s of the nominal ones would close them.", roads, shareText(*share))
 }
+
+// Shares of the nominal carriers that a doped ceramic may plausibly keep: below,
+// association and segregation do not reach; above, the dopant brings no more.
+const (
+	leastShare = 0.02
+	mostShare  = 2.0
+)
+
+// hasWidths reports whether the two roads can be compared at the temperature shown.
+func (r *run) hasWidths() bool { return r.atView("width_gap") != nil }
 
 func (r *run) findCore() string {
 	charge, theta := r.atView("core_charge"), r.atView("core_occupancy")
