@@ -34,8 +34,14 @@ func (r *run) findShare() string {
 		shown = &series[len(series)/2]
 	}
 	text := fmt.Sprintf("Grain boundaries take %s of the ceramic's resistance at %s", shareText(*shown), celsius(float64(shown.Temperature)))
-	if first, last := series[0], series[len(series)-1]; len(series) > 1 {
-		text += fmt.Sprintf(" (%s at %s, %s at %s)", shareText(first), celsius(float64(first.Temperature)), shareText(last), celsius(float64(last.Temperature)))
+	var ends []string
+	for _, n := range []Number{series[0], series[len(series)-1]} {
+		if n.Spectrum != shown.Spectrum {
+			ends = append(ends, fmt.Sprintf("%s at %s", shareText(n), celsius(float64(n.Temperature))))
+		}
+	}
+	if len(ends) > 0 {
+		text += " (" + strings.Join(ends, ", ") + ")"
 	}
 	return text + "."
 }

@@ -138,7 +138,27 @@ func (a *App) bode(title string, y axisSpec, zero bool, of func(complex128) floa
 }
 
 func (a *App) modulusSpec() *chartSpec {
-	return a.bode("Modulus", axisSpec{Label: "|Z|", Unit: "Ω", Scale: "log"}, false, cmplx.Abs)
+	spec := a.bode("Modulus", axisSpec{Label: "|Z|", Unit: "Ω", Scale: "log"}, false, cmplx.Abs)
+	if len(spec.Series) > 0 {
+		spec.Sub = "the other temperatures faint"
+		spec.Series = append(a.otherModuli(), spec.Series...)
+	}
+	return spec
+}
+
+// otherModuli are the spectra that are not shown, as faint lines.
+func (a *App) otherModuli() (list []seriesSpec) {
+	for i, e := range a.Result.Evidence {
+		if i == a.Spectrum() {
+			continue
+		}
+		one := seriesSpec{Name: study.Celsius(e.Spectrum.T), Role: "muted", Mark: "line", Faint: true, Legend: ptr(false)}
+		for _, p := range e.Spectrum.Points {
+			one.X, one.Y = append(one.X, p.F), append(one.Y, cmplx.Abs(p.Z))
+		}
+		list = append(list, one)
+	}
+	return list
 }
 
 func (a *App) phaseSpec() *chartSpec {
