@@ -20,7 +20,11 @@ func Understanding(r impedance.Reading) []string {
 		}
 		say("column %d%s: %s%s (%s)", c.Number, head, c.Quantity, inUnit(c.Unit), c.How)
 	}
-	say("sign of the imaginary part: %s", r.SignHow)
+	taken := "as written"
+	if r.Sign == impedance.SignFlipped {
+		taken = "as −Z″, turned"
+	}
+	say("imaginary part or phase taken %s: %s", taken, r.SignHow)
 	for _, g := range r.Groups {
 		if g.T > 0 {
 			say("%s: %d points", celsius(g.T), g.Points)

@@ -68,8 +68,23 @@ func (a *App) widthSpec() *chartSpec {
 			Low: nums{float64(low) * 1e9}, High: nums{float64(high) * 1e9}})
 		spec.Notes = append(spec.Notes, noteSpec{X: num(n.Value * 1e9), Y: num(w.y + 0.42), Text: w.text, Anchor: "middle"})
 	}
-	spec.X.Domain = around(spec.Series)
+	if spec.X.Domain = around(spec.Series); spec.X.Domain != nil {
+		for i := range spec.Notes {
+			spec.Notes[i].Anchor = anchor(spec.Notes[i].X, *spec.X.Domain)
+		}
+	}
 	return spec
+}
+
+// anchor keeps a note beside a value inside the plot.
+func anchor(x num, domain [2]num) string {
+	switch share := (x - domain[0]) / (domain[1] - domain[0]); {
+	case share < 0.35:
+		return "start"
+	case share > 0.65:
+		return "end"
+	}
+	return "middle"
 }
 
 // around leaves room on both sides of the widths, at least a tenth of them.
