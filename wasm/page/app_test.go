@@ -98,6 +98,8 @@ func TestPretty(t *testing.T) {
 		"2λ_eff/δ − 1":      "2λ<sub>eff</sub>/δ − 1",
 		"V_O••":             "V<sub>O</sub>••",
 		"a < b":             "a &lt; b",
+		"e^a/(2a)":          "e<sup>a</sup>/(2a)",
+		"(R^(1−n) Q)^(1/n)": "(R<sup>1−n</sup> Q)<sup>1/n</sup>",
 		"|z|e, c_D = x N_c": "|z|e, c<sub>D</sub> = x N<sub>c</sub>",
 	} {
 		if got := string(pretty(text)); got != want {

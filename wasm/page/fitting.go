@@ -1,6 +1,7 @@
 package page
 
 import (
+	"math"
 	"slices"
 	"strconv"
 	"strings"
@@ -102,6 +103,46 @@ func (a *App) ToggleOmit(spectrum, point int) {
 		}
 		c.Omit = append(slices.Clone(c.Omit), point)
 	})
+}
+
+// Trim leaves out the points of the spectrum shown, or of all, that lie outside a
+// range of frequency; an empty end is open.
+func (a *App) Trim(below, above string, all bool) {
+	low, err := frequency(below, 0)
+	if err == nil {
+		var high float64
+		if high, err = frequency(above, math.Inf(1)); err == nil {
+			a.trim(low, high, all)
+			return
+		}
+	}
+	a.problem("The range is not usable: " + plain(err) + ".")
+}
+
+// frequency reads one end of the range; open stands for an empty text.
+func frequency(text string, open float64) (float64, error) {
+	if strings.TrimSpace(text) == "" {
+		return open, nil
+	}
+	v, err := quantity.Parse(text, quantity.Frequency)
+	return v.SI, err
+}
+
+func (a *App) trim(low, high float64, all bool) {
+	list, spectra := a.Typed.ControlsOf(), a.Typed.Spectra()
+	for i := range list {
+		if !all && i != a.Spectrum() {
+			continue
+		}
+		omit := slices.Clone(list[i].Omit)
+		for k, p := range spectra[i].Points {
+			if (p.F < low || p.F > high) && !slices.Contains(omit, k) {
+				omit = append(omit, k)
+			}
+		}
+		list[i].Omit = omit
+	}
+	a.set(a.Typed.WithControls(list), "")
 }
 
 // TakeBack takes all points of the spectrum shown back into the fit.

@@ -3,13 +3,35 @@ package page
 import (
 	"html"
 	"strings"
+	"unicode"
 
 	"github.com/vugu/vugu"
 )
 
 // pretty turns a symbol such as R_int or λ_eff into markup with the index
 // lowered, and keeps numbers and their units on one line.
-func pretty(text string) vugu.HTML { return vugu.HTML(lowered(html.EscapeString(text))) }
+func pretty(text string) vugu.HTML { return vugu.HTML(raised(lowered(html.EscapeString(text)))) }
+
+// raised sets what follows a ^ as a power: a bracket, without its brackets, or the
+// letters and digits up to the next other character.
+func raised(text string) string {
+	var b strings.Builder
+	for {
+		head, tail, found := strings.Cut(text, "^")
+		b.WriteString(head)
+		if !found {
+			return b.String()
+		}
+		power, rest := tail, ""
+		if inside, ok := strings.CutPrefix(tail, "("); ok {
+			power, rest, _ = strings.Cut(inside, ")")
+		} else if end := strings.IndexFunc(tail, func(r rune) bool { return !unicode.IsLetter(r) && !unicode.IsDigit(r) && r != '−' }); end >= 0 {
+			power, rest = tail[:end], tail[end:]
+		}
+		b.WriteString("<sup>" + power + "</sup>")
+		text = rest
+	}
+}
 
 // lowered sets what follows an underscore as an index: up to the next character
 // that is no letter, digit, or one of the marks that belong to an index.

@@ -18,6 +18,8 @@ type Spectra struct {
 	all      bool   // the number of arcs goes for all spectra
 	held     string // parameter to hold
 	heldText string // value to hold it at
+	below    string // leave out below this frequency
+	above    string // leave out above this frequency
 }
 
 var arcOptions = []study.Option{{Key: "auto", Label: "auto"}, {Key: "1", Label: "1"}, {Key: "2", Label: "2"}, {Key: "3", Label: "3"}}
