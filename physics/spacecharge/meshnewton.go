@@ -1,0 +1,278 @@
+package spacecharge
+
+import (
+	"fmt"
+	"math"
+)
+
+// NotConverged is the typed error of a mesh solve that did not settle.
+type NotConverged struct {
+	Iterations int
+	Step       float64 // last Newton step in k_BT/e
+	Why        string
+}
+
+func (e *NotConverged) Error() string {
+	return fmt.Sprintf("spacecharge: mesh solution did not settle (last step %.3g k_BT/e after %d iterations), expected %s", e.Step, e.Iterations, e.Why)
+}
+
+// maxNewton bounds the Newton steps on one mesh. The functional is convex, so
+// the steps cannot stall; the bound is there for what rounding may do.
+const maxNewton = 400
+
+// edge is what holds the interface end of the mesh: a fixed potential, or a
+// charge that falls (or stays) as the potential there rises.
+type edge struct {
+	fixed  bool
+	charge func(psi float64) (value, slope float64) // in ε k_BT/(e λ_D)
+}
+
+// mesh is −(κψ′)′ = ρ(x, ψ) on cells from the interface to the grain's centre,
+// where the field vanishes. u is ψ less the reference of the phases.
+type mesh struct {
+	medium    *Medium
+	ends      []float64 // cell ends in Debye lengths
+	phase     []*phase  // per cell
+	reference float64   // ψ_ref
+	frozen    []float64 // charge of frozen profiles beyond their bulk, per cell point; nil: none
+	u         []float64
+	edge      edge
+
+	rho, screening []float64 // per cell point
+	r              []float64 // −gradient of the functional per node
+	delta, trial   []float64
+	lower          []float64 // factors: (degree+1)·points per cell
+	stiffness      float64   // dQ/dψ₀ of the last factorisation
+	total          float64   // Σ w|ρ|
+	conc           []float64 // scratch
+	zmax           float64
+	iterations     int
+	lastStep       float64
+}
+
+func (m *Medium) newMesh(ends []float64, phases []*phase) *mesh {
+	n := len(ends) - 1
+	nodes := n*degree + 1
+	buf := make([]float64, 4*nodes+2*n*points+n*points*points)
+	cut := func(k int) []float64 { s := buf[:k:k]; buf = buf[k:]; return s }
+	g := &mesh{medium: m, ends: ends, phase: phases, u: cut(nodes), r: cut(nodes), delta: cut(nodes), trial: cut(nodes),
+		rho: cut(n * points), screening: cut(n * points), lower: cut(n * points * points),
+		conc: make([]float64, len(m.Species)), zmax: m.largestCharge()}
+	return g
+}
+
+func (m *Medium) largestCharge() float64 {
+	zmax := 0.0
+	for i, s := range m.Species {
+		if s.Mobile {
+			zmax = max(zmax, math.Abs(m.z[i]))
+		}
+	}
+	return zmax
+}
+
+// evaluate writes densities and the residual r = wρ − Ku (+ interface charge) at u.
+func (g *mesh) evaluate(u []float64) bool {
+	clear(g.r)
+	g.total = 0
+	n := len(g.phase)
+	for e := range n {
+		p, at := g.phase[e], e*points
+		first := 0
+		if e > 0 && g.phase[e-1] == p && g.frozen == nil { // the shared node is the same
+			g.rho[at], g.screening[at] = g.rho[at-1], g.screening[at-1]
+			first = 1
+		}
+		for k := first; k < points; k++ {
+			rho, s, ok := p.density(u[e*degree+k], g.conc)
+			if !ok {
+				return false
+			}
+			if g.frozen != nil {
+				rho += g.frozen[at+k]
+			}
+			g.rho[at+k], g.screening[at+k] = rho, s
+		}
+		g.residual(e, u[e*degree:e*degree+points])
+	}
+	if !g.edge.fixed {
+		q, _ := g.edge.charge(u[0] + g.reference)
+		g.r[0] += q
+	}
+	return !math.IsNaN(g.total) && !math.IsInf(g.total, 0)
+}
+
+// residual adds one cell. Differences are taken against the cell's first node,
+// where stiffness rows sum to zero anyway, so that a flat potential cancels exactly.
+func (g *mesh) residual(e int, u []float64) {
+	h := g.ends[e+1] - g.ends[e]
+	k := 2 * g.phase[e].permittivity / h
+	var d [points]float64
+	for i := range points {
+		d[i] = u[i] - u[0]
+	}
+	r, rho := g.r[e*degree:e*degree+points], g.rho[e*points:e*points+points]
+	for i := range points {
+		sum, row := 0.0, &lobatto.stiff[i]
+		for j := 1; j < points; j++ {
+			sum += row[j] * d[j]
+		}
+		w := h / 2 * lobatto.weight[i] * rho[i]
+		r[i] += w - k*sum
+		g.total += math.Abs(w)
+	}
+}
+
+// factor eliminates from the centre to the interface, cell by cell. Row sums
+// are carried instead of diagonals (Grassmann, Taksar, Heyman, Oper. Res. 33,
+// 1107 (1985)): stiffness rows sum to zero, so nothing cancels where the cells
+// are far smaller than the Debye length. What is left at the interface is
+// dQ/dψ₀ of the grain.
+func (g *mesh) factor() {
+	carry := 0.0
+	for e := len(g.phase) - 1; e >= 0; e-- {
+		h := g.ends[e+1] - g.ends[e]
+		kappa := 2 * g.phase[e].permittivity / h
+		var sum [points]float64
+		a := g.lower[e*points*points : (e+1)*points*points]
+		for i := range points {
+			for j := range i {
+				a[i*points+j] = kappa * lobatto.stiff[i][j]
+			}
+			sum[i] = h / 2 * lobatto.weight[i] * g.screening[e*points+i]
+		}
+		sum[degree] += carry
+		for k := degree; k > 0; k-- {
+			row := a[k*points : k*points+points]
+			pivot := sum[k]
+			for j := range k {
+				pivot -= row[j]
+			}
+			inverse := 1 / pivot
+			row[k] = inverse // the diagonal keeps the inverse pivot
+			for i := range k {
+				l := row[i] * inverse
+				if i > 0 {
+					other := a[i*points : i*points+points]
+					for j := range i {
+						other[j] -= l * row[j]
+					}
+				}
+				sum[i] -= l * sum[k]
+			}
+		}
+		carry = sum[0]
+	}
+	g.stiffness = carry
+}
+
+// solve overwrites b with the solution of (K + W·screening) x = b; the node at
+// the interface is left to finish, which gets the reduced right side there.
+func (g *mesh) solve(b []float64, finish func(reduced float64) float64) {
+	for e := len(g.phase) - 1; e >= 0; e-- {
+		a, c := g.lower[e*points*points:(e+1)*points*points], b[e*degree:e*degree+points]
+		for k := degree; k > 0; k-- {
+			row := a[k*points : k*points+k+1]
+			y := c[k] * row[k]
+			c[k] = y
+			for j := range k {
+				c[j] -= row[j] * y
+			}
+		}
+	}
+	b[0] = finish(b[0])
+	for e := range g.phase {
+		a, c := g.lower[e*points*points:(e+1)*points*points], b[e*degree:e*degree+points]
+		for k := 1; k < points; k++ {
+			row := a[k*points : k*points+k+1]
+			sum := 0.0
+			for j := range k {
+				sum += row[j] * c[j]
+			}
+			c[k] -= sum * row[k]
+		}
+	}
+}
+
+// finish is the equation of the interface node.
+func (g *mesh) finish(reduced float64) float64 {
+	if g.edge.fixed {
+		return 0
+	}
+	_, slope := g.edge.charge(g.u[0] + g.reference)
+	return reduced / (g.stiffness - slope)
+}
+
+// newton minimises the convex functional ∫[½κψ′² + Π(ψ)]dx. A step is halved
+// while the functional's slope along it still has changed sign to more than it was.
+func (g *mesh) newton() error {
+	if !g.evaluate(g.u) {
+		return &NotConverged{0, 0, "a start within the range of floating point"}
+	}
+	for range maxNewton {
+		g.iterations++
+		g.factor()
+		copy(g.delta, g.r)
+		g.solve(g.delta, g.finish)
+		step, size, before := 0.0, 0.0, 0.0
+		for i, d := range g.delta {
+			step = max(step, math.Abs(d))
+			size = max(size, math.Abs(g.u[i]))
+			before += g.r[i] * d
+		}
+		g.lastStep = step
+		if math.IsNaN(step) || math.IsInf(step, 0) {
+			return &NotConverged{g.iterations, step, "a finite step"}
+		}
+		if g.zmax*(size+step) > 4*MaxReduced && step > 1e-3 {
+			return &NotConverged{g.iterations, step, fmt.Sprintf("potentials below %d k_BT/e over the charge number", MaxReduced)}
+		}
+		settled := g.zmax*step <= 1e-6*math.Min(1, g.zmax*size)
+		if !g.advance(math.Min(1, 30/(g.zmax*step)), before, settled) {
+			return &NotConverged{g.iterations, step, "a step that lowers the functional"}
+		}
+		if settled {
+			g.factor()
+			return nil
+		}
+	}
+	return &NotConverged{maxNewton, g.lastStep, fmt.Sprintf("it within %d", maxNewton)}
+}
+
+// advance moves along delta by the largest of t, t/2, … that does not overshoot.
+func (g *mesh) advance(t, before float64, settled bool) bool {
+	for range 60 {
+		for i, d := range g.delta {
+			g.trial[i] = g.u[i] + t*d
+		}
+		if g.evaluate(g.trial) {
+			after := 0.0
+			for i, d := range g.delta {
+				after += g.r[i] * d
+			}
+			if settled || after >= -0.5*math.Abs(before) {
+				copy(g.u, g.trial)
+				return true
+			}
+		}
+		t /= 2
+	}
+	return false
+}
+
+// charge is the charge the grain balances, −Σ wρ, and flux the same from the
+// field at the interface; they agree when the solve has converged (Gauss' law).
+func (g *mesh) charge() (charge, flux float64) {
+	sum := 0.0
+	for e := range g.phase {
+		h := g.ends[e+1] - g.ends[e]
+		for k := range points {
+			sum += h / 2 * lobatto.weight[k] * g.rho[e*points+k]
+		}
+	}
+	kappa, d := 2*g.phase[0].permittivity/(g.ends[1]-g.ends[0]), 0.0
+	for j := 1; j < points; j++ {
+		d += lobatto.stiff[0][j] * (g.u[j] - g.u[0])
+	}
+	return -sum, kappa*d - (g.ends[1]-g.ends[0])/2*lobatto.weight[0]*g.rho[0]
+}
