@@ -31,10 +31,11 @@ type edge struct {
 // where the field vanishes. u is ψ less the reference of the phases.
 type mesh struct {
 	medium    *Medium
-	ends      []float64 // cell ends in Debye lengths
-	phase     []*phase  // per cell
-	reference float64   // ψ_ref
-	frozen    []float64 // charge of frozen profiles beyond their bulk, per cell point; nil: none
+	ends      []float64   // cell ends in Debye lengths
+	phase     []*phase    // per cell
+	reference float64     // ψ_ref
+	frozen    []float64   // charge of frozen profiles beyond their bulk, per cell point; nil: none
+	given     [][]float64 // c/c∞ − 1 of each profile, per cell point
 	u         []float64
 	edge      edge
 

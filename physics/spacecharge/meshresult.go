@@ -3,7 +3,6 @@ package spacecharge
 import (
 	"fmt"
 	"math"
-	"slices"
 	"sort"
 )
 
@@ -75,8 +74,8 @@ func (m *Medium) totalConductivity() float64 {
 // local writes c/c∞ and its change at one point of a cell, frozen profiles included.
 func (h HalfGrain) local(g *mesh, st *state, e, k int) {
 	g.medium.at(g.u[e*degree+k]+g.reference, st)
-	for _, p := range h.Profiles {
-		st.gain[p.Species] = p.Excess(g.place(e, k))
+	for j, p := range h.Profiles {
+		st.gain[p.Species] = g.given[j][e*points+k]
 		st.ratio[p.Species] = 1 + st.gain[p.Species]
 	}
 }
@@ -239,17 +238,4 @@ func (g *Grain) excess(species int, x float64) float64 {
 // Concentration returns c of a species in m⁻³ at x in m.
 func (g *Grain) Concentration(species int, x float64) float64 {
 	return g.Medium.Species[species].Bulk * (1 + g.excess(species, x/g.Medium.debye))
-}
-
-// Freeze returns the profile of one species as it is, to be given to a half
-// grain of the same width at another temperature. Beyond the mesh it is flat.
-func (g *Grain) Freeze(species int) FrozenProfile {
-	unit, end := g.Medium.debye, g.grid.ends[len(g.grid.ends)-1]
-	joints := slices.Clone(g.grid.ends)
-	for k := range joints {
-		joints[k] *= unit
-	}
-	return FrozenProfile{Species: species, Joints: joints, Excess: func(x float64) float64 {
-		return g.excess(species, min(x/unit, end))
-	}}
 }
