@@ -11,8 +11,8 @@ import (
 // where the field vanishes. It is solved on a mesh, for what the quadrature of
 // Medium.Solve cannot do: layers that overlap, frozen profiles c(x).
 //
-// The grain is open: in equilibrium with a neutral bulk reservoir of the
-// medium's concentrations, against which potentials count. Model: cells with
+// The grain is open, in equilibrium with a neutral bulk reservoir of the
+// medium's concentrations, against which potentials count, or closed. Model: cells with
 // polynomials of degree 8 through Gauss–Lobatto points, each point's charge
 // weighed in its own volume (charge is conserved as in finite volumes), Newton's
 // method on the convex functional ∫[½εφ′² + Π(φ)]dx. Cells follow the local
@@ -24,7 +24,14 @@ type HalfGrain struct {
 	Width    float64 // m, half the grain; 0: so wide that the layers do not meet
 	Profiles []FrozenProfile
 
+	// Closed: grain and core hold the mobile species as weighed in, at the
+	// medium's concentrations over Width, and potentials count against what the
+	// compensating species would have; use Drop. Otherwise open.
+	Closed bool
+
 	Tolerance float64 // relative, of all results; 0: 1e-6
+
+	thick *ThickCore
 }
 
 // FrozenProfile is the given concentration of a species that does not follow
@@ -51,6 +58,14 @@ type Grain struct {
 	// frozen profile has lengths too, a flat frozen species has none.
 	AcrossLength, AlongLength []float64
 	Across, Along             float64 // Ω m² and S of the summed σ; NaN without a carrier
+
+	// Contents per species in m⁻², what grain and core of this side hold; of the
+	// core's own cells or sites in CoreContents. CoreCharge in C/m² is that of a
+	// thick core's cells.
+	Contents, CoreContents []float64
+	CoreCharge             float64
+
+	Closed bool // conserved totals; otherwise in equilibrium with a reservoir
 
 	RelativeError float64 // largest difference of a result between mesh and halved mesh
 	PositionError float64 // the same of positions, against their distance
@@ -88,48 +103,88 @@ func (h HalfGrain) AtPotential(phi0 float64) (*Grain, error) {
 
 // AtCharge solves for a given interface charge of this side, in C/m².
 func (h HalfGrain) AtCharge(charge float64) (*Grain, error) {
-	m := h.Medium
-	phi, err := m.PotentialForCharge(charge)
-	if err != nil {
-		return nil, err
+	if math.IsNaN(charge) || math.IsInf(charge, 0) {
+		return nil, fmt.Errorf("spacecharge: charge is not usable (%g C/m²), expected a finite number", charge)
 	}
-	value := charge / m.chargeUnit()
-	return h.solve(phi/m.thermal, edge{charge: func(float64) (float64, float64) { return value, 0 }})
+	value := charge / h.Medium.chargeUnit()
+	at := edge{charge: func(float64, []float64) (float64, float64) { return value, 0 }}
+	return h.solve(h.Medium.start(func(float64) float64 { return value }), at)
 }
 
 // WithCore solves for core sites in equilibrium with the grain, and returns
 // their occupancies beside it. Core.Sides shares the core's charge out.
 func (h HalfGrain) WithCore(core Core) (*Grain, Filled, error) {
 	m := h.Medium
-	start, err := m.Fill(core)
+	if core.Sides != Surface && core.Sides != Boundary {
+		return nil, Filled{}, fmt.Errorf("spacecharge: number of layers is not usable (%d), expected 1 or 2", core.Sides)
+	}
+	affinity, err := m.affinities(core)
 	if err != nil {
 		return nil, Filled{}, err
 	}
-	charge, theta, err := m.coreCharge(core)
+	c := &coreSites{m: m, core: core, affinity: affinity, theta: make([]float64, len(core.Sites)), shifted: make([]float64, len(affinity))}
+	psi0 := m.start(func(psi float64) float64 { v, _ := c.charge(psi, nil); return v })
+	g, err := h.solve(psi0, edge{charge: c.charge, sites: c})
 	if err != nil {
 		return nil, Filled{}, err
 	}
-	unit := float64(core.Sides) * m.chargeUnit()
-	g, err := h.solve(start.Phi0/m.thermal, edge{charge: func(psi float64) (float64, float64) {
-		value, slope := charge(psi)
-		return value / unit, slope * m.thermal / unit
-	}})
-	if err != nil {
-		return nil, Filled{}, err
-	}
-	total, _ := charge(g.Phi0 / m.thermal)
-	return g, Filled{Phi0: g.Phi0, Charge: total, Occupancy: theta}, nil
+	value, _ := c.charge(g.Phi0/m.thermal, g.grid.shifts())
+	return g, Filled{Phi0: g.Phi0, Charge: value * m.chargeUnit() * float64(core.Sides), Occupancy: c.theta}, nil
 }
 
-// coreCharge returns the charge of the core in C/m² at ψ₀ with its slope per
-// volt, and the occupancies that the last call left.
-func (m *Medium) coreCharge(core Core) (func(psi float64) (float64, float64), []float64, error) {
-	affinity, err := m.affinities(core)
-	theta := make([]float64, len(core.Sites))
-	return func(psi float64) (value, slope float64) {
-		m.occupy(core, affinity, psi, theta)
-		return m.siteCharge(core, theta)
-	}, theta, err
+// coreSites is a core in equilibrium with the grain at ψ₀ and the activities there.
+type coreSites struct {
+	m                        *Medium
+	core                     Core
+	affinity, theta, shifted []float64
+}
+
+// charge returns the core's charge of one side in units of chargeUnit and its
+// slope with ψ₀; y shifts the logarithm of the activities of mobile species.
+func (c *coreSites) charge(psi float64, y []float64) (value, slope float64) {
+	copy(c.shifted, c.affinity)
+	if y != nil {
+		for k, s := range c.core.Sites {
+			if j := c.m.mobilePlace(s.Species); j >= 0 {
+				c.shifted[k] += y[j]
+			}
+		}
+	}
+	c.m.occupy(c.core, c.shifted, psi, c.theta)
+	value, slope = c.m.siteCharge(c.core, c.theta)
+	unit := c.m.chargeUnit() * float64(c.core.Sides)
+	return value / unit, slope * c.m.thermal / unit
+}
+
+// mobilePlace is the place of a species among the mobile ones, −1 for a frozen one.
+func (m *Medium) mobilePlace(species int) int {
+	if !m.Species[species].Mobile {
+		return -1
+	}
+	n := 0
+	for _, s := range m.Species[:species] {
+		if s.Mobile {
+			n++
+		}
+	}
+	return n
+}
+
+// start returns ψ₀ at which a semi-infinite layer balances a charge that does
+// not rise with ψ₀; what the first mesh is laid for. Bisection: it need not be sharp.
+func (m *Medium) start(charge func(psi float64) float64) float64 {
+	s := m.newSlope()
+	high := MaxReduced / m.largestCharge()
+	low := -high
+	for range 40 {
+		psi := (low + high) / 2
+		if q := math.Copysign(s.at(psi), psi); q > charge(psi) {
+			high = psi
+		} else {
+			low = psi
+		}
+	}
+	return (low + high) / 2
 }
 
 // siteCharge returns the core's charge at given occupancies and its slope per
@@ -175,30 +230,84 @@ func (h HalfGrain) solve(psi0 float64, at edge) (*Grain, error) {
 	if err := h.check(); err != nil {
 		return nil, err
 	}
-	g := h.firstMesh(psi0)
-	g.edge = at
-	g, err := h.settle(g)
+	g, err := h.begin(psi0, at)
+	if err == nil {
+		err = h.close(g)
+	}
+	if err == nil {
+		g, err = h.settle(g)
+	}
 	if err != nil {
 		return nil, fmt.Errorf("spacecharge: half grain of %.3g m at %.3g V: %w", h.Width, psi0*h.Medium.thermal, err)
 	}
 	return h.converge(g)
 }
 
+// quick is the number of Newton steps after which a start counts as poor.
+const quick = 25
+
+// begin finds a start. A potential that is not given is searched for with the
+// interface held at trial values, which settles in a few steps from anywhere:
+// Q(ψ₀) rises and the charge to be balanced does not, so the root is bracketed.
+func (h HalfGrain) begin(psi0 float64, at edge) (*mesh, error) {
+	g := h.firstMesh(psi0)
+	g.edge = at
+	if at.fixed || g.newton(quick) == nil {
+		return g, nil
+	}
+	high := MaxReduced / g.zmax * (1 - 1e-9)
+	low, spent := -high, g.iterations
+	for range 100 {
+		g = h.firstMesh(psi0)
+		g.edge = edge{fixed: true}
+		if err := g.newton(maxNewton); err != nil {
+			return nil, err
+		}
+		spent += g.iterations
+		q := -g.r[0]
+		v, slope := at.charge(psi0, nil)
+		f := math.Asinh(q) - math.Asinh(v)
+		if f > 0 {
+			high = psi0
+		} else {
+			low = psi0
+		}
+		next := psi0 - f/(g.pivot/math.Hypot(1, q)-slope/math.Hypot(1, v))
+		if !(next > low && next < high) {
+			next = (low + high) / 2
+		}
+		if math.Abs(next-psi0) < 1e-3*math.Min(1/g.zmax, math.Abs(psi0)) || high-low < 1e-12 {
+			break
+		}
+		psi0 = next
+	}
+	g.edge, g.iterations = at, spent
+	return g, nil
+}
+
 func (h HalfGrain) firstMesh(psi0 float64) *mesh {
 	m := h.Medium
 	ends, psi := m.grade(psi0, h.Width/m.debye, dropFor(h.tolerance()))
 	ends, psi = h.withJoints(ends, psi)
-	g := m.newMesh(ends, m.uniform(len(ends)-1, 0))
+	ends, psi, core := h.withThick(ends, psi)
+	g := m.newMesh(ends, h.phases(len(ends)-1, core, 0))
+	g.core = core
 	g.spread(psi)
 	h.freeze(g)
 	return g
 }
 
-// uniform returns one phase for n cells.
-func (m *Medium) uniform(n int, psi float64) []*phase {
-	p, list := m.newPhase(psi), make([]*phase, n)
+// phases returns those of n cells, the first of them in a thick core.
+func (h HalfGrain) phases(n, core int, psi float64) []*phase {
+	p, list := h.Medium.newPhase(psi), make([]*phase, n)
 	for k := range list {
 		list[k] = p
+	}
+	if core > 0 {
+		c := h.thick.phase(h.Medium, p)
+		for k := range core {
+			list[k] = c
+		}
 	}
 	return list
 }
@@ -206,11 +315,11 @@ func (m *Medium) uniform(n int, psi float64) []*phase {
 // settle solves on the first mesh, moves the reference to the centre where it
 // is charged, and mends the mesh where it was laid for another potential.
 func (h HalfGrain) settle(g *mesh) (*mesh, error) {
-	if err := g.newton(); err != nil {
+	if err := g.newton(maxNewton); err != nil {
 		return nil, err
 	}
 	for range 6 {
-		ends, psi, changed := g.divided(dropFor(h.tolerance()))
+		ends, psi, core, changed := g.divided(dropFor(h.tolerance()))
 		centre := g.u[len(g.u)-1]
 		shift := g.zmax*math.Abs(centre) > 1e-2
 		if !changed && !shift {
@@ -218,15 +327,17 @@ func (h HalfGrain) settle(g *mesh) (*mesh, error) {
 		}
 		next := g
 		if changed {
-			next = g.medium.newMesh(ends, g.medium.uniform(len(ends)-1, g.reference))
-			next.reference, next.edge, next.iterations = g.reference, g.edge, g.iterations
+			next = g.medium.newMesh(ends, h.phases(len(ends)-1, core, g.reference))
+			next.inherit(g)
+			next.core = core
+			next.closed.apply(next)
 			next.spread(psi)
 			h.freeze(next)
 		}
 		if shift {
-			next.rebase(centre)
+			h.rebase(next, centre)
 		}
-		if err := next.newton(); err != nil {
+		if err := next.newton(maxNewton); err != nil {
 			return nil, err
 		}
 		g = next
@@ -235,22 +346,27 @@ func (h HalfGrain) settle(g *mesh) (*mesh, error) {
 }
 
 // rebase moves the reference potential by a shift.
-func (g *mesh) rebase(shift float64) {
+func (h HalfGrain) rebase(g *mesh, shift float64) {
 	g.reference += shift
 	for i := range g.u {
 		g.u[i] -= shift
 	}
-	copy(g.phase, g.medium.uniform(len(g.phase), g.reference))
+	copy(g.phase, h.phases(len(g.phase), g.core, g.reference))
+	g.closed.apply(g)
 }
+
+// maxRounds bounds the refinements; two are usual, more mend a corner that the
+// first mesh knew nothing of, by halves.
+const maxRounds = 16
 
 // converge halves the mesh, compares, and refines the cells that differ.
 func (h HalfGrain) converge(g *mesh) (*Grain, error) {
 	coarse := h.results(g)
-	for {
+	for round := 1; ; round++ {
 		fine := g.refined(func(int) bool { return true })
 		h.freeze(fine)
 		start := append([]float64(nil), fine.u...)
-		if err := fine.newton(); err != nil {
+		if err := fine.newton(maxNewton); err != nil {
 			return nil, err
 		}
 		better := h.results(fine)
@@ -260,7 +376,7 @@ func (h HalfGrain) converge(g *mesh) (*Grain, error) {
 		if worst <= h.tolerance() && out.PositionError <= h.tolerance() {
 			return out, nil
 		}
-		if len(fine.phase) > maxCell {
+		if len(fine.phase) > maxCell || round == maxRounds {
 			return nil, fmt.Errorf("spacecharge: half grain: %w", &NotConverged{fine.iterations, fine.lastStep,
 				fmt.Sprintf("relative error below %.1g, reached %.2g", h.tolerance(), math.Max(worst, out.PositionError))})
 		}
@@ -268,12 +384,13 @@ func (h HalfGrain) converge(g *mesh) (*Grain, error) {
 			g, coarse = fine, better
 			continue
 		}
+		before := g.iterations
 		g = g.refined(func(e int) bool { return marked[e] })
 		h.freeze(g)
-		if err := g.newton(); err != nil {
+		if err := g.newton(maxNewton); err != nil {
 			return nil, err
 		}
-		g.iterations += fine.iterations
+		g.iterations += fine.iterations - before
 		coarse = h.results(g)
 	}
 }

@@ -195,6 +195,58 @@ func TestMeshRandom(t *testing.T) {
 	t.Logf("%d of %d ended in an error; at most %d Newton steps, %d cells; Gauss %.2g, pressure %.2g and %.2g", failed, n, iterations, cells, gauss, balances[0], balances[1])
 }
 
+// A random frozen profile on a random medium, and the way back: the charge that
+// a potential gives leads to that potential.
+func TestMeshRandomProfiles(t *testing.T) {
+	n := 500
+	if *long {
+		n = 5000
+	}
+	r := rand.New(rand.NewPCG(11, 2))
+	iterations, cells, worst, back := 0, 0, 0.0, 0.0
+	for done := 0; done < n; {
+		m, err := randomMedium(r)
+		if err != nil {
+			continue
+		}
+		h := HalfGrain{Medium: m, Width: 1e-9 * math.Pow(10, 3*r.Float64())}
+		last := len(m.Species) - 1
+		if !m.Species[last].Mobile {
+			amplitude, length := math.Pow(10, 2*r.Float64()-1), h.Width*math.Pow(10, -2*r.Float64())
+			if r.IntN(3) == 0 {
+				amplitude = -r.Float64()
+			}
+			h.Profiles = []FrozenProfile{{Species: last, Excess: func(x float64) float64 { return amplitude * math.Exp(-x/length) }}}
+		}
+		phi := 3*r.Float64() - 1.5
+		done++
+		g, err := h.AtPotential(phi)
+		if err != nil {
+			t.Errorf("%v: %+v phi %g width %g T %g", err, m.Species, phi, h.Width, m.Temperature)
+			continue
+		}
+		iterations, cells, worst = max(iterations, g.Iterations), max(cells, g.Cells), max(worst, g.Residual)
+		if g.Residual > 1e-9 {
+			t.Errorf("gauss %.2g: %+v phi %g width %g", g.Residual, m.Species, phi, h.Width)
+		}
+		if math.Abs(g.Charge)/g.Capacitance/m.thermal > 1e6 { // full sites: the charge hardly tells the potential
+			continue
+		}
+		other, err := h.AtCharge(g.Charge)
+		if err != nil {
+			t.Errorf("way back: %v: %+v phi %g width %g T %g", err, m.Species, phi, h.Width, m.Temperature)
+			continue
+		}
+		iterations = max(iterations, other.Iterations)
+		// an error of the charge by the tolerance shows as that much over dQ/dΦ₀
+		d := math.Abs(other.Phi0-phi) / (math.Abs(phi) + math.Abs(g.Charge)/g.Capacitance)
+		if back = max(back, d); d > 1e-6 {
+			t.Errorf("way back: potential %g, expected %g: %+v width %g", other.Phi0, phi, m.Species, h.Width)
+		}
+	}
+	t.Logf("at most %d Newton steps, %d cells; Gauss %.2g; way back %.2g", iterations, cells, worst, back)
+}
+
 func demoMedium(tb testing.TB) *Medium {
 	m, err := NewMedium(573.15, 30, []Species{
 		{Name: "vacancy", Charge: 2, Bulk: 1.25e26, Mobile: true, Mobility: 8e-12},

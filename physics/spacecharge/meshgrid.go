@@ -158,13 +158,24 @@ func (g *mesh) refined(mark func(e int) bool) *mesh {
 	}
 	f := g.medium.newMesh(ends, phases)
 	copy(f.u, u)
-	f.reference, f.edge, f.iterations = g.reference, g.edge, g.iterations
+	f.inherit(g)
+	for e := range g.core {
+		if mark(e) {
+			f.core++
+		}
+	}
 	return f
+}
+
+// inherit takes over everything but cells and potential.
+func (g *mesh) inherit(from *mesh) {
+	g.reference, g.edge, g.iterations = from.reference, from.edge, from.iterations
+	g.core, g.closed = from.core, from.closed
 }
 
 // divided splits every cell whose |z|u changes by far more than drop into
 // pieces of equal change; it mends a mesh laid for another potential.
-func (g *mesh) divided(drop float64) (ends, psi []float64, changed bool) {
+func (g *mesh) divided(drop float64) (ends, psi []float64, core int, changed bool) {
 	ends, psi = []float64{g.ends[0]}, []float64{g.u[0] + g.reference}
 	for e := range g.phase {
 		a, b := g.u[e*degree], g.u[e*degree+degree]
@@ -175,11 +186,14 @@ func (g *mesh) divided(drop float64) (ends, psi []float64, changed bool) {
 			changed = true
 		}
 		ends, psi = append(ends, g.ends[e+1]), append(psi, b+g.reference)
+		if e < g.core {
+			core = len(ends) - 1
+		}
 	}
 	if !slices.IsSorted(ends) {
-		return g.ends, nil, false
+		return g.ends, nil, g.core, false
 	}
-	return ends, psi, changed
+	return ends, psi, core, changed
 }
 
 // locate returns where u takes the value v in a cell whose ends bracket it.

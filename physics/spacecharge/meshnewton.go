@@ -20,11 +20,15 @@ func (e *NotConverged) Error() string {
 // the steps cannot stall; the bound is there for what rounding may do.
 const maxNewton = 400
 
+// nothing is the change, in k_BT/e or Debye lengths, below which a layer counts as none.
+const nothing = 1e-13
+
 // edge is what holds the interface end of the mesh: a fixed potential, or a
 // charge that falls (or stays) as the potential there rises.
 type edge struct {
 	fixed  bool
-	charge func(psi float64) (value, slope float64) // in ε k_BT/(e λ_D)
+	charge func(psi float64, y []float64) (value, slope float64) // in ε k_BT/(e λ_D)
+	sites  *coreSites                                            // what fills it, for closed totals; nil: nothing
 }
 
 // mesh is −(κψ′)′ = ρ(x, ψ) on cells from the interface to the grain's centre,
@@ -38,12 +42,15 @@ type mesh struct {
 	given     [][]float64 // c/c∞ − 1 of each profile, per cell point
 	u         []float64
 	edge      edge
+	core      int     // cells of a thick core, before x = 0
+	closed    *closed // amounts as weighed in; nil: open
 
 	rho, screening []float64 // per cell point
 	r              []float64 // −gradient of the functional per node
 	delta, trial   []float64
 	lower          []float64 // factors: (degree+1)·points per cell
-	stiffness      float64   // dQ/dψ₀ of the last factorisation
+	stiffness      float64   // dQ/dψ₀ of the grain in the last factorisation
+	pivot          float64   // the same at the first node: of core and grain
 	total          float64   // Σ w|ρ|
 	conc           []float64 // scratch
 	zmax           float64
@@ -97,8 +104,11 @@ func (g *mesh) evaluate(u []float64) bool {
 		g.residual(e, u[e*degree:e*degree+points])
 	}
 	if !g.edge.fixed {
-		q, _ := g.edge.charge(u[0] + g.reference)
+		q, _ := g.edge.charge(u[0]+g.reference, g.shifts())
 		g.r[0] += q
+	}
+	if g.closed != nil {
+		g.closed.evaluate(g, u)
 	}
 	return !math.IsNaN(g.total) && !math.IsInf(g.total, 0)
 }
@@ -163,8 +173,11 @@ func (g *mesh) factor() {
 			}
 		}
 		carry = sum[0]
+		if e == g.core {
+			g.stiffness = carry
+		}
 	}
-	g.stiffness = carry
+	g.pivot = carry
 }
 
 // solve overwrites b with the solution of (K + W·screening) x = b; the node at
@@ -200,35 +213,44 @@ func (g *mesh) finish(reduced float64) float64 {
 	if g.edge.fixed {
 		return 0
 	}
-	_, slope := g.edge.charge(g.u[0] + g.reference)
-	return reduced / (g.stiffness - slope)
+	_, slope := g.edge.charge(g.u[0]+g.reference, g.shifts())
+	return reduced / (g.pivot - slope)
 }
 
 // newton minimises the convex functional ∫[½κψ′² + Π(ψ)]dx. A step is halved
 // while the functional's slope along it still has changed sign to more than it was.
-func (g *mesh) newton() error {
+func (g *mesh) newton(limit int) error {
 	if !g.evaluate(g.u) {
 		return &NotConverged{0, 0, "a start within the range of floating point"}
 	}
-	for range maxNewton {
+	for range limit {
 		g.iterations++
 		g.factor()
 		copy(g.delta, g.r)
 		g.solve(g.delta, g.finish)
 		step, size, before := 0.0, 0.0, 0.0
+		if g.closed != nil {
+			step, before = g.closed.border(g)
+		}
 		for i, d := range g.delta {
 			step = max(step, math.Abs(d))
 			size = max(size, math.Abs(g.u[i]))
 			before += g.r[i] * d
 		}
 		g.lastStep = step
+		if g.charged() {
+			step = 0
+			for _, d := range g.delta {
+				step = max(step, math.Abs(d-g.delta[0]))
+			}
+		}
 		if math.IsNaN(step) || math.IsInf(step, 0) {
 			return &NotConverged{g.iterations, step, "a finite step"}
 		}
 		if g.zmax*(size+step) > 4*MaxReduced && step > 1e-3 {
 			return &NotConverged{g.iterations, step, fmt.Sprintf("potentials below %d k_BT/e over the charge number", MaxReduced)}
 		}
-		settled := g.zmax*step <= 1e-6*math.Min(1, g.zmax*size)
+		settled := g.zmax*step <= 1e-6*math.Min(1, g.zmax*size)+nothing
 		if !g.advance(math.Min(1, 30/(g.zmax*step)), before, settled) {
 			return &NotConverged{g.iterations, step, "a step that lowers the functional"}
 		}
@@ -237,7 +259,14 @@ func (g *mesh) newton() error {
 			return nil
 		}
 	}
-	return &NotConverged{maxNewton, g.lastStep, fmt.Sprintf("it within %d", maxNewton)}
+	return &NotConverged{g.iterations, g.lastStep, fmt.Sprintf("it within %d", limit)}
+}
+
+// charged says whether the charge to be balanced is met to rounding, in which
+// case what the potential as a whole still moves by is noise.
+func (g *mesh) charged() bool {
+	d := math.Abs(g.delta[0])
+	return !g.edge.fixed && g.zmax*d < 1e-3 && d*g.pivot < 1e-15*g.total
 }
 
 // advance moves along delta by the largest of t, t/2, … that does not overshoot.
@@ -246,13 +275,17 @@ func (g *mesh) advance(t, before float64, settled bool) bool {
 		for i, d := range g.delta {
 			g.trial[i] = g.u[i] + t*d
 		}
+		if g.closed != nil {
+			g.closed.move(g, t)
+		}
 		if g.evaluate(g.trial) {
-			after := 0.0
+			after := g.closed.slope()
 			for i, d := range g.delta {
 				after += g.r[i] * d
 			}
 			if settled || after >= -0.5*math.Abs(before) {
 				copy(g.u, g.trial)
+				g.closed.accept()
 				return true
 			}
 		}
@@ -265,15 +298,25 @@ func (g *mesh) advance(t, before float64, settled bool) bool {
 // field at the interface; they agree when the solve has converged (Gauss' law).
 func (g *mesh) charge() (charge, flux float64) {
 	sum := 0.0
-	for e := range g.phase {
+	for e := g.core; e < len(g.phase); e++ {
 		h := g.ends[e+1] - g.ends[e]
 		for k := range points {
 			sum += h / 2 * lobatto.weight[k] * g.rho[e*points+k]
 		}
 	}
-	kappa, d := 2*g.phase[0].permittivity/(g.ends[1]-g.ends[0]), 0.0
+	h, at := g.ends[g.core+1]-g.ends[g.core], g.core*degree
+	d := 0.0
 	for j := 1; j < points; j++ {
-		d += lobatto.stiff[0][j] * (g.u[j] - g.u[0])
+		d += lobatto.stiff[0][j] * (g.u[at+j] - g.u[at])
 	}
-	return -sum, kappa*d - (g.ends[1]-g.ends[0])/2*lobatto.weight[0]*g.rho[0]
+	return -sum, 2*g.phase[g.core].permittivity/h*d - h/2*lobatto.weight[0]*g.rho[g.core*points]
+}
+
+// shifts are the logarithms by which closed totals change the activities, per
+// mobile species; nil for an open grain.
+func (g *mesh) shifts() []float64 {
+	if g.closed == nil {
+		return nil
+	}
+	return g.closed.y
 }

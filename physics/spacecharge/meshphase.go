@@ -12,7 +12,8 @@ type phase struct {
 	ref          []float64 // their concentrations at the reference
 	lattice      []int     // −1: dilute
 	lattices     []shared
-	charge       float64 // net charge density at the reference
+	charge       float64   // net charge density at the reference
+	shift        []float64 // ln of what multiplies e^{−zu}: site energies, closed totals; nil: none
 }
 
 // shared is a sublattice of limited sites.
@@ -59,7 +60,7 @@ func (m *Medium) newPhase(psi float64) *phase {
 func (p *phase) density(u float64, grown []float64) (rho, screening float64, ok bool) {
 	rho = p.charge
 	for j, z := range p.z {
-		t := -z * u
+		t := p.exponent(j, u)
 		if t > MaxReduced {
 			return 0, 0, false
 		}
@@ -82,6 +83,13 @@ func (p *phase) density(u float64, grown []float64) (rho, screening float64, ok 
 	return rho, screening, true
 }
 
+func (p *phase) exponent(j int, u float64) float64 {
+	if p.shift == nil {
+		return -p.z[j] * u
+	}
+	return p.shift[j] - p.z[j]*u
+}
+
 // density of a sublattice: with s = Σ p_ref(e^{−zu} − 1) the shares of its sites
 // are p = p_ref e^{−zu}/(1+s). Its screening N(⟨z²⟩ − ⟨z⟩²) is summed over pairs,
 // empty sites being of charge 0, since it all but cancels where one kind fills it.
@@ -89,7 +97,7 @@ func (l *shared) density(p *phase, u float64, grown []float64) (rho, screening f
 	s, whole := 0.0, l.empty
 	for _, j := range l.members {
 		s += p.ref[j] / l.sites * grown[j]
-		l.weight[j] = p.ref[j] / l.sites * math.Exp(-p.z[j]*u)
+		l.weight[j] = p.ref[j] / l.sites * math.Exp(p.exponent(j, u))
 		whole += l.weight[j]
 	}
 	for a, j := range l.members {
@@ -122,4 +130,39 @@ func (p *phase) pressure(u float64) float64 {
 		sum += l.sites * math.Log1p(s)
 	}
 	return sum
+}
+
+// composition writes c/c∞ and its change at u in a phase; frozen species 1.
+func (g *mesh) composition(p *phase, u float64, st *state) {
+	m := g.medium
+	if p.shift == nil {
+		m.at(u+g.reference, st)
+		return
+	}
+	j := 0
+	for i, s := range m.Species {
+		st.ratio[i], st.gain[i] = 1, 0
+		if !s.Mobile {
+			continue
+		}
+		t := p.shift[j] - m.z[i]*(u+g.reference)
+		st.ratio[i], st.gain[i] = math.Exp(t), math.Expm1(t)
+		j++
+	}
+	for k, list := range m.members {
+		whole, s := 1.0, 0.0
+		for _, i := range list {
+			share := m.Species[i].Bulk / m.sites[k]
+			whole += share * (st.ratio[i] - 1)
+			s += share * st.gain[i]
+		}
+		more := p.lattices[k].sites * m.screen / m.sites[k]
+		for _, i := range list {
+			st.gain[i] = (st.gain[i] - s) / whole
+			st.ratio[i] *= more / whole
+			if more != 1 {
+				st.gain[i] = st.ratio[i] - 1
+			}
+		}
+	}
 }

@@ -22,7 +22,7 @@ func (h HalfGrain) freeze(g *mesh) {
 	for j, p := range h.Profiles {
 		gain := buf[(j+1)*n : (j+2)*n]
 		factor := m.z[p.Species] * m.Species[p.Species].Bulk / m.screen
-		for e := range g.phase {
+		for e := g.core; e < len(g.phase); e++ {
 			inside := 1e-12 * m.debye * (g.ends[e+1] - g.ends[e])
 			for k := range points {
 				x := g.place(e, k)

@@ -7,7 +7,8 @@ import (
 )
 
 // integrals are the parts that each cell adds to the results, [cell][quantity]:
-// charge, across and along per species, across of the summed conductivity.
+// charge, across and along per species, across of the summed conductivity; then
+// charge and contents c/c∞ of a thick core.
 type integrals struct {
 	n      int // quantities
 	parts  []float64
@@ -20,7 +21,7 @@ type integrals struct {
 func (h HalfGrain) results(g *mesh) *integrals {
 	m := g.medium
 	ns := len(m.Species)
-	in := &integrals{n: 2*ns + 2, stiff: g.stiffness}
+	in := &integrals{n: 3*ns + 3, stiff: g.stiffness}
 	in.parts = make([]float64, in.n*len(g.phase))
 	in.totals = make([]float64, in.n)
 	st := m.newState()
@@ -31,6 +32,15 @@ func (h HalfGrain) results(g *mesh) *integrals {
 		for k := range points {
 			w := width / 2 * lobatto.weight[k]
 			h.local(g, &st, e, k)
+			if e < g.core {
+				part[2*ns+2] += w * g.rho[e*points+k]
+				for i, s := range m.Species {
+					if s.Mobile {
+						part[2*ns+3+i] += w * st.ratio[i]
+					}
+				}
+				continue
+			}
 			part[0] -= w * g.rho[e*points+k]
 			change, sigma := 0.0, 0.0
 			for i := range ns {
@@ -73,7 +83,7 @@ func (m *Medium) totalConductivity() float64 {
 
 // local writes c/c∞ and its change at one point of a cell, frozen profiles included.
 func (h HalfGrain) local(g *mesh, st *state, e, k int) {
-	g.medium.at(g.u[e*degree+k]+g.reference, st)
+	g.composition(g.phase[e], g.u[e*degree+k], st)
 	for j, p := range h.Profiles {
 		st.gain[p.Species] = g.given[j][e*points+k]
 		st.ratio[p.Species] = 1 + st.gain[p.Species]
@@ -93,17 +103,14 @@ const cancelled = 1e-2
 // halve: those whose own parts differ by more than their share of it.
 func compare(coarse, fine *integrals, cells int, tolerance float64) (float64, []bool) {
 	worst := math.Abs(fine.stiff-coarse.stiff) / math.Abs(fine.stiff)
-	worst = max(worst, math.Abs(fine.flux-coarse.flux)/max(math.Abs(fine.flux), math.SmallestNonzeroFloat64))
+	worst = max(worst, math.Abs(fine.flux-coarse.flux)/max(math.Abs(fine.flux), nothing))
 	var marked []bool
 	for q := range fine.n {
 		sum, abs := 0.0, 0.0
 		for e := range 2 * cells {
 			abs += math.Abs(fine.parts[e*fine.n+q])
 		}
-		scale := max(math.Abs(fine.totals[q]), cancelled*abs)
-		if scale == 0 {
-			continue
-		}
+		scale := max(math.Abs(fine.totals[q]), cancelled*abs, nothing)
 		for e := range cells {
 			d := math.Abs(fine.parts[2*e*fine.n+q] + fine.parts[(2*e+1)*fine.n+q] - coarse.parts[e*coarse.n+q])
 			sum += d
@@ -120,12 +127,15 @@ func compare(coarse, fine *integrals, cells int, tolerance float64) (float64, []
 }
 
 // positionError compares the potential carried over from the coarse mesh with
-// the solved one at the new points: δx = δψ/|ψ′|, against the distance, where ψ
+// the solved one at the new points, both as drops from the interface: δx = δψ/|ψ′|, against the distance, where ψ
 // is still a hundredth of its drop.
 func positionError(g *mesh, start []float64) float64 {
-	worst, last := 0.0, len(g.u)-1
-	drop := math.Abs(g.u[0] - g.u[last])
-	for e := range g.phase {
+	worst, first, last := 0.0, g.core*degree, len(g.u)-1
+	drop := math.Abs(g.u[first] - g.u[last])
+	if drop < nothing {
+		return 0
+	}
+	for e := g.core; e < len(g.phase); e++ {
 		u := g.u[e*degree : e*degree+points]
 		if math.Abs(u[degree]-g.u[last]) < 0.01*drop {
 			break
@@ -136,10 +146,8 @@ func positionError(g *mesh, start []float64) float64 {
 				slope += lobatto.slope[k][j] * (u[j] - u[0])
 			}
 			h := g.ends[e+1] - g.ends[e]
-			dx := math.Abs(u[k]-start[e*degree+k]) / math.Abs(2*slope/h)
-			if e*degree+k < last { // the slope vanishes at the centre itself
-				worst = max(worst, dx/g.ends[e+1])
-			}
+			slope = max(math.Abs(2*slope/h), 0.02*drop/g.ends[e+1]) // an extremum has no position
+			worst = max(worst, math.Abs((u[k]-g.u[first])-(start[e*degree+k]-start[first]))/slope/g.ends[e+1])
 		}
 	}
 	return worst
@@ -148,13 +156,14 @@ func positionError(g *mesh, start []float64) float64 {
 // grain turns mesh and integrals into results with units.
 func (h HalfGrain) grain(g *mesh, in *integrals) *Grain {
 	m := g.medium
-	n, last := len(m.Species), len(g.u)-1
+	n, first, last := len(m.Species), g.core*degree, len(g.u)-1
 	out := &Grain{Medium: m, Width: m.debye * g.ends[len(g.ends)-1], grid: g, profiles: h.Profiles,
-		Phi0: m.thermal * (g.u[0] + g.reference), Drop: m.thermal * (g.u[0] - g.u[last]),
-		Charge: m.chargeUnit() * in.totals[0], Field: m.thermal / m.debye * in.flux / g.phase[0].permittivity,
+		Phi0: m.thermal * (g.u[first] + g.reference), Drop: m.thermal * (g.u[first] - g.u[last]),
+		Charge: m.chargeUnit() * in.totals[0], Field: m.thermal / m.debye * in.flux / g.phase[g.core].permittivity,
 		Capacitance: m.epsilon / m.debye * g.stiffness,
 		Across:      math.NaN(), Along: math.NaN(),
-		Iterations: g.iterations, Cells: len(g.phase)}
+		CoreCharge: m.chargeUnit() * in.totals[2*n+2],
+		Closed:     h.Closed, Iterations: g.iterations, Cells: len(g.phase)}
 	if g.total > 0 {
 		out.Residual = math.Abs(in.flux-in.totals[0]) / g.total
 	}
@@ -163,6 +172,11 @@ func (h HalfGrain) grain(g *mesh, in *integrals) *Grain {
 		lengths[k] = m.debye * in.totals[1+k]
 	}
 	out.AcrossLength, out.AlongLength = lengths[:n], lengths[n:]
+	out.Contents, out.CoreContents = make([]float64, n), make([]float64, n)
+	for i, s := range m.Species {
+		out.CoreContents[i] = s.Bulk*m.debye*in.totals[2*n+3+i] + g.edge.sites.content(i)
+		out.Contents[i] = s.Bulk*(out.Width+out.AlongLength[i]) + out.CoreContents[i]
+	}
 	if m.totalConductivity() > 0 {
 		out.Across, out.Along = m.debye*in.totals[2*n+1], 0
 		for i := range n {
@@ -172,17 +186,22 @@ func (h HalfGrain) grain(g *mesh, in *integrals) *Grain {
 	return out
 }
 
-// PotentialAt returns φ(x) in V against the reservoir, x in m from 0 to Width.
+// PotentialAt returns φ(x) in V against the reservoir, x in m from 0 to Width;
+// in a thick core x is negative.
 func (g *Grain) PotentialAt(x float64) (float64, error) {
-	if !(x >= 0 && x <= g.Width*(1+1e-12)) {
+	if !(x >= g.grid.ends[0]*g.Medium.debye && x <= g.Width*(1+1e-12)) {
 		return math.NaN(), fmt.Errorf("spacecharge: distance is not in the half grain (%g m), expected 0 to %g", x, g.Width)
 	}
 	return g.Medium.thermal * (g.grid.value(x/g.Medium.debye) + g.grid.reference), nil
 }
 
+func (g *mesh) cell(x float64) int {
+	return min(max(sort.SearchFloat64s(g.ends, x)-1, 0), len(g.phase)-1)
+}
+
 // value returns u at x in Debye lengths.
 func (g *mesh) value(x float64) float64 {
-	e := min(max(sort.SearchFloat64s(g.ends, x)-1, 0), len(g.phase)-1)
+	e := g.cell(x)
 	var c [points]float64
 	lobatto.cardinals(min(2*(x-g.ends[e])/(g.ends[e+1]-g.ends[e])-1, 1), &c)
 	u, d := g.u[e*degree:e*degree+points], 0.0
@@ -196,11 +215,11 @@ func (g *mesh) value(x float64) float64 {
 // to the given fraction of φ(0), in m; fraction 1 is the interface itself.
 func (g *Grain) Distance(fraction float64) (float64, error) {
 	grid, m := g.grid, g.Medium
-	goal := fraction*(grid.u[0]+grid.reference) - grid.reference
+	goal := fraction*g.Phi0/m.thermal - grid.reference
 	if fraction == 1 {
 		return 0, nil
 	}
-	for e := range grid.phase {
+	for e := grid.core; e < len(grid.phase); e++ {
 		if (grid.u[e*degree]-goal)*(grid.u[e*degree+degree]-goal) <= 0 {
 			return m.debye * grid.locate(e, goal), nil
 		}
@@ -231,7 +250,8 @@ func (g *Grain) excess(species int, x float64) float64 {
 		}
 	}
 	st := g.Medium.newState()
-	g.Medium.at(g.grid.value(x)+g.grid.reference, &st)
+	e := g.grid.cell(x)
+	g.grid.composition(g.grid.phase[e], g.grid.value(x), &st)
 	return st.gain[species]
 }
 
