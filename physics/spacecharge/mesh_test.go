@@ -247,6 +247,32 @@ func TestMeshRandomProfiles(t *testing.T) {
 	t.Logf("at most %d Newton steps, %d cells; Gauss %.2g; way back %.2g", iterations, cells, worst, back)
 }
 
+// Far fewer particles than sites: limited sites become dilute, by the share filled.
+func TestMeshDiluteLimit(t *testing.T) {
+	last := math.Inf(1)
+	for _, sites := range []float64{1e28, 1e30, 1e32} {
+		var list [2]*Grain
+		for k, n := range []float64{0, sites} {
+			m, err := NewMedium(900, 40, []Species{{Name: "a", Charge: 2, Bulk: 1e24, Mobile: true, Sites: n},
+				{Name: "b", Charge: -1, Bulk: 2e24, Mobile: true, Sites: n}})
+			if err != nil {
+				t.Fatal(err)
+			}
+			if list[k], err = (HalfGrain{Medium: m, Width: 3e-9, Tolerance: 1e-8}).AtPotential(-0.15); err != nil {
+				t.Fatal(err)
+			}
+		}
+		d := relative(list[0].Charge, list[1].Charge)
+		if !(d < last/50) {
+			t.Errorf("%g sites: charge off by %.2g after %.2g", sites, d, last)
+		}
+		last = d
+	}
+	if last > 1e-6 {
+		t.Errorf("still off by %.2g", last)
+	}
+}
+
 func demoMedium(tb testing.TB) *Medium {
 	m, err := NewMedium(573.15, 30, []Species{
 		{Name: "vacancy", Charge: 2, Bulk: 1.25e26, Mobile: true, Mobility: 8e-12},
