@@ -139,6 +139,10 @@ func (r *run) findShortForm() string {
 	if bias == nil {
 		return ""
 	}
+	if r.hasWidths() && !r.result.WidthsAgree(r.result.View.Spectrum) {
+		return fmt.Sprintf("The routes contradict each other too: the time constants alone give %s V (exact depletion).",
+			q.FormatNumber(r.atViewValue("phi0_depletion"), 3))
+	}
 	mv := 1e3 * float64(bias.Value)
 	return fmt.Sprintf("The short form alone would read %s mV too %s; exact depletion %s mV.", q.FormatNumber(math.Abs(mv), 2),
 		map[bool]string{true: "high", false: "low"}[mv > 0], signed(q.FormatNumber(1e3*float64(r.atViewValue("phi0_depletion")-r.atViewValue("phi0_full"))*sign(r.atViewValue("phi0_full")), 2)))

@@ -139,6 +139,9 @@ func (r *run) entered() {
 			kind = q.Number
 		}
 		n := Number{ID: "entered_" + f.Param, Station: f.Station, Label: f.Label, Symbol: f.Symbol, Kind: kind, Value: Float(u.Value), Source: Entered}
+		if r.in.Borrowed(f.Param) {
+			n.Source = Borrowed
+		}
 		if u.Plus > 0 {
 			n.Low, n.High = Float(u.Value-u.Plus), Float(u.Value+u.Plus)
 		}

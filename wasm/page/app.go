@@ -71,7 +71,7 @@ func (a *App) openLink(fragment string) {
 
 // Edit takes what is typed into a field.
 func (a *App) Edit(param, text string) {
-	if a.Typed.Get(param) == text {
+	if _, typed := a.Typed.Text[param]; typed && a.Typed.Get(param) == text {
 		return
 	}
 	in := a.Typed.With(param, text)
@@ -91,7 +91,9 @@ func (a *App) New() {
 // set makes these the inputs. what names the edit; edits of one name in a row are
 // one step of undo.
 func (a *App) set(in study.Inputs, what string) {
-	a.history.push(a.Typed, what)
+	if len(a.Problems) == 0 { // undo leads to what was usable, not to a field half typed
+		a.history.push(a.Typed, what)
+	}
 	a.show(in)
 }
 
@@ -297,6 +299,10 @@ func (a *App) SaveTable() {
 
 // CopyLink puts the link on the clipboard.
 func (a *App) CopyLink() {
+	if len(a.Problems) > 0 {
+		a.problem("First mend the field: " + a.Problems[0].Param + ": " + a.Problems[0].Text)
+		return
+	}
 	link := a.Host.Address() + "#" + a.Typed.Link()
 	a.Host.CopyText(link, func(err error) {
 		if err != nil {

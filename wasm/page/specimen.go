@@ -25,7 +25,7 @@ func (a *App) numbersOf(station string) (list []study.Number) {
 		return nil
 	}
 	for _, n := range a.Result.Numbers {
-		if n.Station == station && n.Spectrum == 0 && n.Source != study.Entered {
+		if n.Station == station && n.Spectrum == 0 && n.Source != study.Entered && n.Source != study.Borrowed {
 			list = append(list, n)
 		}
 	}
