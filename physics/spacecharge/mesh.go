@@ -290,7 +290,7 @@ func (h HalfGrain) firstMesh(psi0 float64) *mesh {
 	ends, psi := m.grade(psi0, h.Width/m.debye, dropFor(h.tolerance()))
 	ends, psi = h.withJoints(ends, psi)
 	ends, psi, core := h.withThick(ends, psi)
-	g := m.newMesh(ends, h.phases(len(ends)-1, core, 0))
+	g := m.newMesh(ends, h.phases(len(ends)-1, core, 0, nil))
 	g.core = core
 	g.spread(psi)
 	h.freeze(g)
@@ -298,8 +298,8 @@ func (h HalfGrain) firstMesh(psi0 float64) *mesh {
 }
 
 // phases returns those of n cells, the first of them in a thick core.
-func (h HalfGrain) phases(n, core int, psi float64) []*phase {
-	p, list := h.Medium.newPhase(psi), make([]*phase, n)
+func (h HalfGrain) phases(n, core int, psi float64, base []float64) []*phase {
+	p, list := h.Medium.newPhase(psi, base), make([]*phase, n)
 	for k := range list {
 		list[k] = p
 	}
@@ -321,13 +321,13 @@ func (h HalfGrain) settle(g *mesh) (*mesh, error) {
 	for range 6 {
 		ends, psi, core, changed := g.divided(dropFor(h.tolerance()))
 		centre := g.u[len(g.u)-1]
-		shift := g.zmax*math.Abs(centre) > 1e-2
+		shift := g.zmax*math.Abs(centre) > 1e-2 || g.closed.far()
 		if !changed && !shift {
 			return g, nil
 		}
 		next := g
 		if changed {
-			next = g.medium.newMesh(ends, h.phases(len(ends)-1, core, g.reference))
+			next = g.medium.newMesh(ends, h.phases(len(ends)-1, core, g.reference, g.closed.reference()))
 			next.inherit(g)
 			next.core = core
 			next.closed.apply(next)
@@ -351,7 +351,8 @@ func (h HalfGrain) rebase(g *mesh, shift float64) {
 	for i := range g.u {
 		g.u[i] -= shift
 	}
-	copy(g.phase, h.phases(len(g.phase), g.core, g.reference))
+	g.closed.rebase()
+	copy(g.phase, h.phases(len(g.phase), g.core, g.reference, g.closed.reference()))
 	g.closed.apply(g)
 }
 

@@ -135,7 +135,7 @@ func TestMeshAgainstQuadrature(t *testing.T) {
 func (g *Grain) balance() float64 {
 	grid := g.grid
 	u0, uc := grid.u[0], grid.u[len(grid.u)-1]
-	p := grid.medium.newPhase(grid.reference + uc) // no cancellation against the centre
+	p := grid.medium.newPhase(grid.reference+uc, nil) // no cancellation against the centre
 	fixed := p.charge
 	for j, z := range p.z {
 		fixed -= z * p.ref[j]

@@ -17,6 +17,7 @@ type closed struct {
 	species []int     // places among the mobile species
 	amount  []float64 // N in screen·λ_D
 	y, last []float64 // shifts per mobile species, and where the step started
+	base    []float64 // what of y the phases' reference has taken up
 	energy  []float64 // shifts of a thick core on top
 	r, dy   []float64 // N − content and step, per conserved species
 	hess    []float64 // ∂²F/∂y∂y
@@ -36,7 +37,7 @@ func (h HalfGrain) close(g *mesh) error {
 	}
 	m := h.Medium
 	n := len(g.phase[0].z)
-	c := &closed{y: make([]float64, n), last: make([]float64, n)}
+	c := &closed{y: make([]float64, n), last: make([]float64, n), base: make([]float64, n)}
 	most, left := 0.0, -1
 	for i, s := range m.Species {
 		if v := math.Abs(m.z[i]) * s.Bulk; s.Mobile && v > most {
@@ -74,13 +75,42 @@ func (c *closed) apply(g *mesh) {
 		if p.shift == nil {
 			p.shift = make([]float64, len(p.z))
 		}
-		copy(p.shift, c.y)
+		for j := range p.shift {
+			p.shift[j] = c.y[j] - c.base[j]
+		}
 		if e < g.core {
 			for j := range c.energy {
 				p.shift[j] += c.energy[j]
 			}
 		}
 	}
+}
+
+// reference is what the phases take up of the shifts: where hardly anything is
+// left of what was weighed in, charges are not to be differences of the latter.
+func (c *closed) reference() []float64 {
+	if c == nil {
+		return nil
+	}
+	return c.base
+}
+
+func (c *closed) rebase() {
+	if c != nil {
+		copy(c.base, c.y)
+	}
+}
+
+func (c *closed) far() bool {
+	if c == nil {
+		return false
+	}
+	for j, v := range c.y {
+		if math.Abs(v-c.base[j]) > 1e-2 {
+			return true
+		}
+	}
+	return false
 }
 
 // contents writes the concentrations at u in units of screen, and per species

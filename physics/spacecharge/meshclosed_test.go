@@ -250,7 +250,7 @@ func TestClosedRandom(t *testing.T) {
 			if !errors.As(err, &typed) {
 				t.Errorf("untyped: %v", err)
 			}
-			t.Logf("%v: %+v, %+v, T %g", err, m.Species, core, m.Temperature)
+			t.Logf("%v: %+v, %+v, T %g, eps %g, width %g", err, m.Species, core, m.Temperature, m.Permittivity, h.Width)
 			continue
 		}
 		iterations = max(iterations, g.Iterations)

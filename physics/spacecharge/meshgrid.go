@@ -67,7 +67,7 @@ type slope struct {
 }
 
 func (m *Medium) newSlope() *slope {
-	s := &slope{m: m, st: m.newState(), bulk: m.newPhase(0)}
+	s := &slope{m: m, st: m.newState(), bulk: m.newPhase(0, nil)}
 	for j, z := range s.bulk.z {
 		s.fixed -= z * s.bulk.ref[j]
 	}

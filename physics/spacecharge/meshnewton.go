@@ -247,7 +247,7 @@ func (g *mesh) newton(limit int) error {
 		if math.IsNaN(step) || math.IsInf(step, 0) {
 			return &NotConverged{g.iterations, step, "a finite step"}
 		}
-		if g.zmax*(size+step) > 4*MaxReduced && step > 1e-3 {
+		if g.zmax*size > 4*MaxReduced {
 			return &NotConverged{g.iterations, step, fmt.Sprintf("potentials below %d k_BT/e over the charge number", MaxReduced)}
 		}
 		settled := g.zmax*step <= 1e-6*math.Min(1, g.zmax*size)+nothing

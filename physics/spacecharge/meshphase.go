@@ -24,15 +24,20 @@ type shared struct {
 	weight  []float64 // scratch
 }
 
-// newPhase builds the grain's own phase at a reference potential.
-func (m *Medium) newPhase(psi float64) *phase {
+// newPhase builds the grain's own phase at a reference potential and, in a
+// closed grain, at reference shifts of the activities; nil: none.
+func (m *Medium) newPhase(psi float64, base []float64) *phase {
 	st := m.newState()
-	m.at(psi, &st)
+	m.compose(psi, base, nil, &st)
 	n := len(m.Species)
 	p := &phase{permittivity: 1}
 	place := make([]int, n)
 	for i, s := range m.Species {
-		p.charge += m.z[i] * s.Bulk * st.gain[i] / m.screen
+		if base == nil { // by neutrality, exact at ψ = 0
+			p.charge += m.z[i] * s.Bulk * st.gain[i] / m.screen
+		} else {
+			p.charge += m.z[i] * s.Bulk * st.ratio[i] / m.screen
+		}
 		if s.Mobile {
 			place[i] = len(p.z)
 			p.z, p.ref = append(p.z, m.z[i]), append(p.ref, s.Bulk*st.ratio[i]/m.screen)
@@ -45,7 +50,11 @@ func (m *Medium) newPhase(psi float64) *phase {
 		for _, i := range list {
 			share := m.Species[i].Bulk / m.sites[k]
 			empty -= share
-			grown += share * math.Exp(-m.z[i]*psi)
+			t := -m.z[i] * psi
+			if base != nil {
+				t += base[place[i]]
+			}
+			grown += share * math.Exp(t)
 			l.members = append(l.members, place[i])
 		}
 		l.empty = empty / (empty + grown)
@@ -132,11 +141,27 @@ func (p *phase) pressure(u float64) float64 {
 	return sum
 }
 
-// composition writes c/c∞ and its change at u in a phase; frozen species 1.
-func (g *mesh) composition(p *phase, u float64, st *state) {
-	m := g.medium
-	if p.shift == nil {
-		m.at(u+g.reference, st)
+// composition writes c/c∞ and its change at u in a cell; frozen species 1.
+func (g *mesh) composition(e int, u float64, st *state) {
+	if e >= g.core || g.closed != nil && g.closed.energy == nil {
+		g.medium.compose(u+g.reference, g.shifts(), nil, st)
+		return
+	}
+	p := g.phase[e]
+	shift := append([]float64(nil), p.shift...)
+	if g.closed != nil {
+		for j := range shift {
+			shift[j] += g.closed.base[j]
+		}
+	}
+	g.medium.compose(u+g.reference, shift, p.lattices, st)
+}
+
+// compose writes c/c∞ and its change at ψ with the logarithms shifted; the
+// sites of other lattices, a thick core's, may be given.
+func (m *Medium) compose(psi float64, shift []float64, other []shared, st *state) {
+	if shift == nil {
+		m.at(psi, st)
 		return
 	}
 	j := 0
@@ -145,7 +170,7 @@ func (g *mesh) composition(p *phase, u float64, st *state) {
 		if !s.Mobile {
 			continue
 		}
-		t := p.shift[j] - m.z[i]*(u+g.reference)
+		t := shift[j] - m.z[i]*psi
 		st.ratio[i], st.gain[i] = math.Exp(t), math.Expm1(t)
 		j++
 	}
@@ -153,14 +178,17 @@ func (g *mesh) composition(p *phase, u float64, st *state) {
 		whole, s := 1.0, 0.0
 		for _, i := range list {
 			share := m.Species[i].Bulk / m.sites[k]
-			whole += share * (st.ratio[i] - 1)
+			whole -= share
 			s += share * st.gain[i]
 		}
-		more := p.lattices[k].sites * m.screen / m.sites[k]
+		for _, i := range list {
+			whole += m.Species[i].Bulk / m.sites[k] * st.ratio[i]
+		}
 		for _, i := range list {
 			st.gain[i] = (st.gain[i] - s) / whole
-			st.ratio[i] *= more / whole
-			if more != 1 {
+			st.ratio[i] /= whole
+			if other != nil {
+				st.ratio[i] *= other[k].sites * m.screen / m.sites[k]
 				st.gain[i] = st.ratio[i] - 1
 			}
 		}

@@ -14,6 +14,7 @@ type integrals struct {
 	parts  []float64
 	totals []float64
 	flux   float64
+	width  float64 // of the grain, in Debye lengths
 	stiff  float64
 }
 
@@ -21,7 +22,7 @@ type integrals struct {
 func (h HalfGrain) results(g *mesh) *integrals {
 	m := g.medium
 	ns := len(m.Species)
-	in := &integrals{n: 3*ns + 3, stiff: g.stiffness}
+	in := &integrals{n: 3*ns + 3, stiff: g.stiffness, width: g.ends[len(g.ends)-1]}
 	in.parts = make([]float64, in.n*len(g.phase))
 	in.totals = make([]float64, in.n)
 	st := m.newState()
@@ -83,7 +84,7 @@ func (m *Medium) totalConductivity() float64 {
 
 // local writes c/c∞ and its change at one point of a cell, frozen profiles included.
 func (h HalfGrain) local(g *mesh, st *state, e, k int) {
-	g.composition(g.phase[e], g.u[e*degree+k], st)
+	g.composition(e, g.u[e*degree+k], st)
 	for j, p := range h.Profiles {
 		st.gain[p.Species] = g.given[j][e*points+k]
 		st.ratio[p.Species] = 1 + st.gain[p.Species]
@@ -99,6 +100,10 @@ func (g *mesh) place(e, k int) float64 {
 // share: a total that nearly cancels has no relative error of its own.
 const cancelled = 1e-2
 
+// rounding is what c/c∞ − 1 of a flat bulk is off by: an excess over the whole
+// width that is smaller cannot be told from none.
+const rounding = 2e-15
+
 // compare returns the largest relative difference of a total, and the cells to
 // halve: those whose own parts differ by more than their share of it.
 func compare(coarse, fine *integrals, cells int, tolerance float64) (float64, []bool) {
@@ -111,6 +116,9 @@ func compare(coarse, fine *integrals, cells int, tolerance float64) (float64, []
 			abs += math.Abs(fine.parts[e*fine.n+q])
 		}
 		scale := max(math.Abs(fine.totals[q]), cancelled*abs, nothing)
+		if q > 0 {
+			scale = max(scale, rounding*fine.width/tolerance)
+		}
 		for e := range cells {
 			d := math.Abs(fine.parts[2*e*fine.n+q] + fine.parts[(2*e+1)*fine.n+q] - coarse.parts[e*coarse.n+q])
 			sum += d
@@ -126,13 +134,16 @@ func compare(coarse, fine *integrals, cells int, tolerance float64) (float64, []
 	return worst, marked
 }
 
+// noDrop is the drop, in k_BT/e, below which a potential is flat: no position is read off it.
+const noDrop = 1e-8
+
 // positionError compares the potential carried over from the coarse mesh with
 // the solved one at the new points, both as drops from the interface: δx = δψ/|ψ′|, against the distance, where ψ
 // is still a hundredth of its drop.
 func positionError(g *mesh, start []float64) float64 {
 	worst, first, last := 0.0, g.core*degree, len(g.u)-1
 	drop := math.Abs(g.u[first] - g.u[last])
-	if drop < nothing {
+	if drop < noDrop {
 		return 0
 	}
 	for e := g.core; e < len(g.phase); e++ {
@@ -251,7 +262,7 @@ func (g *Grain) excess(species int, x float64) float64 {
 	}
 	st := g.Medium.newState()
 	e := g.grid.cell(x)
-	g.grid.composition(g.grid.phase[e], g.grid.value(x), &st)
+	g.grid.composition(e, g.grid.value(x), &st)
 	return st.gain[species]
 }
 

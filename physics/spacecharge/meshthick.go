@@ -34,7 +34,7 @@ func (h HalfGrain) WithThickCore(core ThickCore) (*Grain, error) {
 	}
 	h.thick = &core
 	m := h.Medium
-	p := core.phase(m, m.newPhase(0))
+	p := core.phase(m, m.newPhase(0, nil))
 	width, scratch := core.half()/m.debye, make([]float64, len(m.Species))
 	psi0 := m.start(func(psi float64) float64 { // as if the potential were flat in it
 		rho, _, ok := p.density(psi, scratch)
