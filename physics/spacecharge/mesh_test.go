@@ -5,6 +5,7 @@ import (
 	"flag"
 	"math"
 	"math/rand/v2"
+	"strings"
 	"testing"
 )
 
@@ -192,6 +193,9 @@ func TestMeshRandom(t *testing.T) {
 			}
 		}
 	}
+	if iterations > 60 || failed > n/500 {
+		t.Errorf("%d Newton steps, %d errors of %d", iterations, failed, n)
+	}
 	t.Logf("%d of %d ended in an error; at most %d Newton steps, %d cells; Gauss %.2g, pressure %.2g and %.2g", failed, n, iterations, cells, gauss, balances[0], balances[1])
 }
 
@@ -291,6 +295,61 @@ func BenchmarkMesh(b *testing.B) {
 	for b.Loop() {
 		if _, err := h.AtPotential(0.3); err != nil {
 			b.Fatal(err)
+		}
+	}
+}
+
+func TestMeshErrors(t *testing.T) {
+	m := demoMedium(t)
+	flat := func(float64) float64 { return 0 }
+	for name, f := range map[string]func() error{
+		"width":           func() error { _, err := HalfGrain{Medium: m, Width: -1}.AtPotential(0.1); return err },
+		"potential":       func() error { _, err := HalfGrain{Medium: m}.AtPotential(math.NaN()); return err },
+		"too high":        func() error { _, err := HalfGrain{Medium: m}.AtPotential(50); return err },
+		"charge":          func() error { _, err := HalfGrain{Medium: m}.AtCharge(math.Inf(1)); return err },
+		"sides":           func() error { _, _, err := HalfGrain{Medium: m}.WithCore(Core{}); return err },
+		"closed, endless": func() error { _, err := HalfGrain{Medium: m, Closed: true}.AtCharge(0.1); return err },
+		"closed, held":    func() error { _, err := HalfGrain{Medium: m, Width: 1e-9, Closed: true}.AtPotential(0.1); return err },
+		"mobile profile": func() error {
+			_, err := HalfGrain{Medium: m, Profiles: []FrozenProfile{{Species: 0, Excess: flat}}}.AtPotential(0.1)
+			return err
+		},
+		"profile of none": func() error {
+			_, err := HalfGrain{Medium: m, Profiles: []FrozenProfile{{Species: 9, Excess: flat}}}.AtPotential(0.1)
+			return err
+		},
+		"negative profile": func() error {
+			_, err := HalfGrain{Medium: m, Width: 1e-9, Profiles: []FrozenProfile{{Species: 2, Excess: func(float64) float64 { return -2 }}}}.AtPotential(0.1)
+			return err
+		},
+		"core width": func() error { _, err := HalfGrain{Medium: m}.WithThickCore(ThickCore{Sides: 2}); return err },
+		"core sites": func() error {
+			_, err := HalfGrain{Medium: m}.WithThickCore(ThickCore{Sides: 2, Width: 1e-9, Species: []CoreSpecies{{Species: 0, Sites: 1e27}}})
+			return err
+		},
+		"core frozen": func() error {
+			_, err := HalfGrain{Medium: m}.WithThickCore(ThickCore{Sides: 2, Width: 1e-9, Species: []CoreSpecies{{Species: 2}}})
+			return err
+		},
+		"stages": func() error {
+			one := cooling(t, 900, true, true)
+			other := Stage{m, Core{Sides: Boundary}}
+			_, _, err := HalfGrain{}.Cool([]Stage{one, other})
+			return err
+		},
+		"no such place": func() error {
+			g, err := HalfGrain{Medium: m, Width: 1e-9}.AtPotential(0.1)
+			if err != nil {
+				return nil
+			}
+			_, err = g.PotentialAt(2e-9)
+			return err
+		},
+	} {
+		if err := f(); err == nil {
+			t.Errorf("%s: no error", name)
+		} else if !strings.HasPrefix(err.Error(), "spacecharge: ") || !strings.Contains(err.Error(), ", expected ") {
+			t.Errorf("%s: %v", name, err)
 		}
 	}
 }

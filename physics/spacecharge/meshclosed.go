@@ -1,8 +1,10 @@
 package spacecharge
 
 import (
+	"cmp"
 	"errors"
 	"math"
+	"slices"
 )
 
 // closed adds to the unknowns the shifts y = Δ ln(activity) of the conserved
@@ -24,8 +26,23 @@ type closed struct {
 	cross   [][]float64
 }
 
-// close prepares the balances of a closed grain.
-func (h HalfGrain) close(g *mesh) error {
+// byCharge lists the mobile species, the one that holds most charge first.
+func (m *Medium) byCharge() []int {
+	var list []int
+	for i, s := range m.Species {
+		if s.Mobile {
+			list = append(list, i)
+		}
+	}
+	slices.SortStableFunc(list, func(a, b int) int {
+		return cmp.Compare(math.Abs(m.z[b])*m.Species[b].Bulk, math.Abs(m.z[a])*m.Species[a].Bulk)
+	})
+	return slices.DeleteFunc(list, func(i int) bool { return m.z[i] == 0 })
+}
+
+// close prepares the balances of a closed grain; the species left out has its
+// activity kept.
+func (h HalfGrain) close(g *mesh, left int) error {
 	if !h.Closed {
 		return nil
 	}
@@ -38,12 +55,6 @@ func (h HalfGrain) close(g *mesh) error {
 	m := h.Medium
 	n := len(g.phase[0].z)
 	c := &closed{y: make([]float64, n), last: make([]float64, n), base: make([]float64, n)}
-	most, left := 0.0, -1
-	for i, s := range m.Species {
-		if v := math.Abs(m.z[i]) * s.Bulk; s.Mobile && v > most {
-			most, left = v, i
-		}
-	}
 	width := h.Width
 	if h.thick != nil {
 		width += h.thick.half()
@@ -171,42 +182,6 @@ func (c *closed) evaluate(g *mesh, u []float64) {
 	if g.edge.sites != nil {
 		g.edge.sites.close(g, c)
 	}
-}
-
-// close adds the core's sites to the balances; charge has just been called.
-func (s *coreSites) close(g *mesh, c *closed) {
-	k, m := len(c.species), s.m
-	unit := float64(s.core.Sides) * m.screen * m.debye
-	for e, one := range s.core.Sites {
-		a := c.place(m.mobilePlace(one.Species))
-		if a < 0 {
-			continue
-		}
-		n := one.PerArea * s.theta[e] / unit
-		c.r[a] -= n
-		c.cross[a][0] -= n * (m.z[one.Species] - m.meanCharge(s.core, s.theta, e))
-		c.hess[a*k+a] += n
-		for f, other := range s.core.Sites {
-			b := c.place(m.mobilePlace(other.Species))
-			if b >= 0 && (f == e || shares(one, other)) {
-				c.hess[a*k+b] -= n * s.theta[f]
-			}
-		}
-	}
-}
-
-// content is what the core's sites of one side hold of a species, m⁻².
-func (s *coreSites) content(species int) float64 {
-	if s == nil {
-		return 0
-	}
-	sum := 0.0
-	for k, one := range s.core.Sites {
-		if one.Species == species {
-			sum += one.PerArea * s.theta[k] / float64(s.core.Sides)
-		}
-	}
-	return sum
 }
 
 func (c *closed) place(mobile int) int {

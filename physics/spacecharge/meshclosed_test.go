@@ -267,6 +267,9 @@ func TestClosedRandom(t *testing.T) {
 			}
 		}
 	}
+	if failed > n/100 {
+		t.Errorf("%d errors of %d", failed, n)
+	}
 	t.Logf("%d of %d ended in an error; at most %d Newton steps; contents off by %.2g", failed, n, iterations, worst)
 }
 
@@ -285,5 +288,15 @@ func TestMeshFlat(t *testing.T) {
 	g, err = h.WithThickCore(ThickCore{Sides: Surface, Width: 1e-9, Fixed: -q.ElementaryCharge * m.Species[2].Bulk})
 	if err != nil || math.Abs(g.Phi0) > 1e-12 {
 		t.Errorf("core like the grain: %v, %+v", err, g)
+	}
+}
+
+func BenchmarkClosed(b *testing.B) {
+	m, core := segregating(b, true)
+	b.ReportAllocs()
+	for b.Loop() {
+		if _, _, err := (HalfGrain{Medium: m, Width: 10e-9, Closed: true}).WithCore(core); err != nil {
+			b.Fatal(err)
+		}
 	}
 }

@@ -76,6 +76,40 @@ func (h HalfGrain) withJoints(ends, psi []float64) ([]float64, []float64) {
 	return all, resample(ends, psi, all)
 }
 
+// resolve halves cells until each carries a given profile without joints to
+// 1e-9 of its whole; a charge that the grain holds must not depend on the mesh.
+func (p FrozenProfile) resolve(ends, psi []float64, unit float64) ([]float64, []float64) {
+	if len(p.Joints) > 0 {
+		return ends, psi
+	}
+	over := func(a, b float64) float64 {
+		sum := 0.0
+		for k := range points {
+			sum += (b - a) / 2 * lobatto.weight[k] * p.Excess(unit*(a+(b-a)*(lobatto.node[k]+1)/2))
+		}
+		return sum
+	}
+	whole := 0.0
+	for e := range len(ends) - 1 {
+		whole += math.Abs(over(ends[e], ends[e+1]))
+	}
+	all := []float64{ends[0]}
+	var split func(a, b float64, depth int)
+	split = func(a, b float64, depth int) {
+		mid := (a + b) / 2
+		if depth > 0 && math.Abs(over(a, mid)+over(mid, b)-over(a, b)) > 1e-9*whole {
+			split(a, mid, depth-1)
+			split(mid, b, depth-1)
+			return
+		}
+		all = append(all, b)
+	}
+	for e := range len(ends) - 1 {
+		split(ends[e], ends[e+1], 12)
+	}
+	return all, resample(ends, psi, all)
+}
+
 // resample interpolates ψ onto other cell ends, in the logarithm where it can.
 func resample(x, y, at []float64) []float64 {
 	out := make([]float64, len(at))
